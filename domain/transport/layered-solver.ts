@@ -1,0 +1,129 @@
+import { assertWithin, DomainError } from '../quantities/errors.js';
+import type { OpticalLayer } from '../tissue/optical-layer.js';
+import type { BeamProfile } from './beam-profile.js';
+import { solveBroadBeam } from './broad-beam.js';
+import { solveSpotSpread } from './spot-spread.js';
+
+export interface LightOptions {
+  readonly accuracy: 'ranking' | 'fine';
+}
+
+/** Light in a stack of layers under a beam at normal incidence from air. A null spot is a beam of unlimited width. */
+export interface LightSolution {
+  /** Reflection of the arriving beam at the surface itself. */
+  readonly specularReflectance: number;
+  /** All other light that comes back out; with `transmittance` and `absorbedFraction` the four sum to 1. */
+  readonly diffuseReflectance: number;
+  readonly transmittance: number;
+  readonly absorbedFraction: number;
+  /** Fluence rate on the beam axis at each depth over the incident irradiance on the axis.
+   *  Throws: out-of-range for a depth outside the stack. */
+  fluenceRatios(spot: BeamProfile | null, depthsUm: ArrayLike<number>): Float64Array;
+  /** Mean over each cell between consecutive ascending faces of absorbed power per volume on the axis, over the incident
+   *  irradiance there, per cm. Exact in energy for the broad beam. Shape: one fewer than faces.
+   *  Throws: out-of-range for a face outside the stack or faces that do not ascend. */
+  absorbedPerCm(spot: BeamProfile | null, facesUm: ArrayLike<number>): Float64Array;
+  /** Depth at which fluence on the axis has fallen to 1/e of its greatest value; null when it does not within the stack. */
+  penetrationDepthMm(spot: BeamProfile | null): number | null;
+}
+
+const ordinatesPerRegion = { ranking: 4, fine: 16 } as const; // directions each side of the critical angle
+
+/** Solves light transport: broad beam by discrete ordinates, finite spots by their ratio to it.
+ *  Throws: out-of-range for a faulty layer. */
+export function solveLight(layers: readonly OpticalLayer[], options: LightOptions): LightSolution {
+  checkLayers(layers);
+  const broad = solveBroadBeam(layers, ordinatesPerRegion[options.accuracy]);
+  let spread: ReturnType<typeof solveSpotSpread> | undefined;
+  const tops: number[] = [0];
+  for (const layer of layers) tops.push(tops[tops.length - 1]! + layer.thicknessUm);
+  const bottom = tops[layers.length]!;
+
+  const place = (depthsUm: ArrayLike<number>): { where: Int32Array; below: Float64Array } => {
+    const where = new Int32Array(depthsUm.length);
+    const below = new Float64Array(depthsUm.length);
+    for (let i = 0; i < depthsUm.length; i++) {
+      const depth = depthsUm[i]!;
+      assertWithin('depth in um', depth, 0, bottom);
+      let j = 0;
+      while (j + 1 < layers.length && depth >= tops[j + 1]!) j++;
+      where[i] = j;
+      below[i] = depth - tops[j]!;
+    }
+    return { where, below };
+  };
+  const ratiosAt = (spot: BeamProfile, where: Int32Array, below: Float64Array): Float64Array => {
+    spread ??= solveSpotSpread(layers);
+    return spread.ratios(spot, where, below);
+  };
+  const fluenceRatios = (spot: BeamProfile | null, depthsUm: ArrayLike<number>): Float64Array => {
+    const { where, below } = place(depthsUm);
+    const fluences = Float64Array.from(where, (j, i) => broad.fluence(j, below[i]!));
+    if (spot) {
+      const ratios = ratiosAt(spot, where, below);
+      for (let i = 0; i < fluences.length; i++) fluences[i]! *= ratios[i]!;
+    }
+    return fluences;
+  };
+  const absorbedPerCm = (spot: BeamProfile | null, facesUm: ArrayLike<number>): Float64Array => {
+    const { where, below } = place(facesUm);
+    const cells = Math.max(0, facesUm.length - 1);
+    const means = new Float64Array(cells);
+    const middles = new Float64Array(cells);
+    let flux = broad.flux(where[0] ?? 0, below[0] ?? 0);
+    for (let i = 0; i < cells; i++) {
+      const width = facesUm[i + 1]! - facesUm[i]!;
+      if (!(width > 0))
+        throw new DomainError('out-of-range', 'cell faces must ascend', { quantity: 'facesUm', value: facesUm[i + 1]! });
+      const next = broad.flux(where[i + 1]!, below[i + 1]!);
+      means[i] = Math.max(0, (flux - next) / (width * 1e-4));
+      middles[i] = facesUm[i]! + width / 2;
+      flux = next;
+    }
+    if (spot) {
+      const middle = place(middles);
+      const ratios = ratiosAt(spot, middle.where, middle.below);
+      for (let i = 0; i < cells; i++) means[i]! *= ratios[i]!;
+    }
+    return means;
+  };
+  const penetrationDepthMm = (spot: BeamProfile | null): number | null => {
+    const depths: number[] = [];
+    for (let depth = 0; depth < bottom; depth = depth * 1.03 + 1) depths.push(depth);
+    depths.push(bottom);
+    const fluences = fluenceRatios(spot, depths);
+    let peak = 0;
+    for (let i = 1; i < fluences.length; i++) if (fluences[i]! > fluences[peak]!) peak = i;
+    const wanted = fluences[peak]! / Math.E;
+    for (let i = peak + 1; i < fluences.length; i++) {
+      if (fluences[i]! <= wanted && fluences[i]! > 0) {
+        const part = Math.log(fluences[i - 1]! / wanted) / Math.log(fluences[i - 1]! / fluences[i]!);
+        return (depths[i - 1]! + part * (depths[i]! - depths[i - 1]!)) / 1000;
+      }
+    }
+    return null;
+  };
+  const { specularReflectance, diffuseReflectance, transmittance } = broad;
+  const absorbedFraction = 1 - specularReflectance - diffuseReflectance - transmittance;
+  return {
+    specularReflectance,
+    diffuseReflectance,
+    transmittance,
+    absorbedFraction,
+    fluenceRatios,
+    absorbedPerCm,
+    penetrationDepthMm,
+  };
+}
+
+/** Refuses layers that transport cannot follow. Throws: out-of-range. */
+function checkLayers(layers: readonly OpticalLayer[]): void {
+  assertWithin('number of layers', layers.length, 1, 32);
+  for (const layer of layers) {
+    assertWithin(`thickness of ${layer.name} in um`, layer.thicknessUm, 1e-3, 1e9);
+    assertWithin(`absorption of ${layer.name} per cm`, layer.absorptionPerCm, 0, 1e7);
+    assertWithin(`scattering of ${layer.name} per cm`, layer.scatteringPerCm, 0, 1e7);
+    assertWithin(`anisotropy of ${layer.name}`, layer.anisotropy, -0.999, 0.999);
+    assertWithin(`refractive index of ${layer.name}`, layer.refractiveIndex, 1, 2);
+  }
+}
