@@ -1,75 +1,73 @@
-import { type EigenSystem, symmetricTridiagonalEigen } from '../numeric/eigen.js';
+import { symmetricTridiagonalEigen } from '../numeric/eigen.js';
 import { type HeatGrid, inSeries } from './heat-grid.js';
 
-/** Decaying temperature profiles of a grid whose surface exchanges heat through one coefficient: the solution of
- *  C dT/dt = -K T is a sum of modes, each falling as exp(-rate t). Rates in 1/s, ascending.
- *  `modeOfCell[mode * cells + cell]` is the orthonormal vector divided by the square root of the cell's capacity. */
-export interface SurfaceModes {
+/** Decaying temperature profiles of a row of cells. The solution of C dT/dt = -K T is a sum of modes that each fall as
+ *  exp(-rate t); rates ascend. `modeOfCell[mode * size + cell]` is the orthonormal vector over the root of the cell's capacity,
+ *  so that the amplitude of a mode is the sum over cells of capacity x temperature x modeOfCell. */
+export interface ChainModes {
   readonly size: number;
   readonly ratesPerS: Float64Array;
   readonly modeOfCell: Float64Array;
-  /** From the cooling medium to the center of the first cell. */
-  readonly exchangeWPerM2K: number;
 }
 
-/** Modes of one grid for every heat transfer coefficient met so far; share one between requests on the same grid. */
+/** Modes of cells in a row, given their capacities, the conductances between neighbors and the one from the first cell outward.
+ *  The far end is insulated. Throws: not-converged. */
+export function chainModes(capacity: Float64Array, conductance: Float64Array, exchange: number): ChainModes {
+  const size = capacity.length;
+  const diagonal = capacity.map((c, i) => ((i === 0 ? exchange : conductance[i - 1]!) + (conductance[i] ?? 0)) / c);
+  const offDiagonal = conductance.map((g, i) => -g / Math.sqrt(capacity[i]! * capacity[i + 1]!));
+  const { values, vectors } = symmetricTridiagonalEigen(diagonal, offDiagonal);
+  const rootCapacity = capacity.map(Math.sqrt);
+  const modeOfCell = vectors.map((component, index) => component / rootCapacity[index % size]!);
+  return { size, ratesPerS: values.map((value) => Math.max(value, 0)), modeOfCell };
+}
+
+/** Modes already worked out, to be shared between requests: layered ones by grid and heat transfer coefficient, others by a key. */
 export class HeatModes {
-  readonly #byCoefficient = new Map<number, SurfaceModes>();
-  readonly #transfers = new Map<string, Float64Array>();
+  readonly #layered = new WeakMap<HeatGrid, Map<string, ChainModes>>();
+  readonly #transfers = new WeakMap<ChainModes, WeakMap<ChainModes, Float64Array>>();
+  readonly #keyed = new Map<string, unknown>();
 
-  constructor(readonly grid: HeatGrid) {}
-
-  forCoefficient(heatTransferWPerM2K: number): SurfaceModes {
-    let modes = this.#byCoefficient.get(heatTransferWPerM2K);
-    if (modes === undefined) {
-      modes = surfaceModes(this.grid, heatTransferWPerM2K);
-      this.#byCoefficient.set(heatTransferWPerM2K, modes);
-    }
-    return modes;
+  /** Modes of a grid whose surface gives heat to a medium through this coefficient. */
+  layered(grid: HeatGrid, heatTransferWPerM2K: number): ChainModes {
+    const known = this.#layered.get(grid) ?? new Map<string, ChainModes>();
+    this.#layered.set(grid, known);
+    return remember(known, String(heatTransferWPerM2K), () =>
+      chainModes(grid.capacityJPerM2K, grid.conductanceWPerM2K, surfaceExchange(grid, heatTransferWPerM2K)),
+    );
   }
 
-  /** Matrix [later * size + earlier] that rewrites amplitudes under one coefficient as amplitudes under another. */
-  transfer(earlierWPerM2K: number, laterWPerM2K: number): Float64Array {
-    const key = `${earlierWPerM2K} ${laterWPerM2K}`;
-    let matrix = this.#transfers.get(key);
-    if (matrix === undefined) {
-      matrix = transferMatrix(this.grid, this.forCoefficient(earlierWPerM2K), this.forCoefficient(laterWPerM2K));
-      this.#transfers.set(key, matrix);
-    }
+  /** Matrix [later * size + earlier] that rewrites amplitudes of one set of modes as amplitudes of another on the same grid. */
+  transfer(grid: HeatGrid, earlier: ChainModes, later: ChainModes): Float64Array {
+    const known = this.#transfers.get(earlier) ?? new WeakMap<ChainModes, Float64Array>();
+    this.#transfers.set(earlier, known);
+    const matrix = known.get(later) ?? transferMatrix(grid.capacityJPerM2K, earlier, later);
+    known.set(later, matrix);
     return matrix;
   }
-}
 
-function surfaceModes(grid: HeatGrid, heatTransferWPerM2K: number): SurfaceModes {
-  const { capacityJPerM2K: capacity, conductanceWPerM2K: conductance } = grid;
-  const size = capacity.length;
-  const exchangeWPerM2K = heatTransferWPerM2K === 0 ? 0 : inSeries(heatTransferWPerM2K, grid.halfConductanceWPerM2K[0]!);
-  const diagonal = Float64Array.from(capacity, (c, i) => {
-    const above = i === 0 ? exchangeWPerM2K : conductance[i - 1]!;
-    const below = i === size - 1 ? 0 : conductance[i]!;
-    return (above + below) / c;
-  });
-  const offDiagonal = Float64Array.from(conductance, (g, i) => -g / Math.sqrt(capacity[i]! * capacity[i + 1]!));
-  return { size, exchangeWPerM2K, ...scaled(symmetricTridiagonalEigen(diagonal, offDiagonal), capacity) };
-}
-
-function scaled(system: EigenSystem, capacity: Float64Array): { ratesPerS: Float64Array; modeOfCell: Float64Array } {
-  const { size, values, vectors } = system;
-  const modeOfCell = new Float64Array(size * size);
-  for (let mode = 0; mode < size; mode++) {
-    for (let cell = 0; cell < size; cell++) {
-      modeOfCell[mode * size + cell] = vectors[mode * size + cell]! / Math.sqrt(capacity[cell]!);
-    }
+  keyed<Value>(key: string, make: () => Value): Value {
+    return remember(this.#keyed as Map<string, Value>, key, make);
   }
-  return { ratesPerS: values.map((value) => Math.max(value, 0)), modeOfCell };
 }
 
-function transferMatrix(grid: HeatGrid, earlier: SurfaceModes, later: SurfaceModes): Float64Array {
+/** Coefficient from the cooling medium to the center of the first cell. */
+export function surfaceExchange(grid: HeatGrid, heatTransferWPerM2K: number): number {
+  return heatTransferWPerM2K === 0 ? 0 : inSeries(heatTransferWPerM2K, grid.halfConductanceWPerM2K[0]!);
+}
+
+function remember<Value>(known: Map<string, Value>, key: string, make: () => Value): Value {
+  const value = known.get(key) ?? make();
+  known.set(key, value);
+  return value;
+}
+
+function transferMatrix(capacity: Float64Array, earlier: ChainModes, later: ChainModes): Float64Array {
   const { size } = earlier;
   const matrix = new Float64Array(size * size);
   const weighted = new Float64Array(size);
   for (let to = 0; to < size; to++) {
-    for (let cell = 0; cell < size; cell++) weighted[cell] = later.modeOfCell[to * size + cell]! * grid.capacityJPerM2K[cell]!;
+    for (let cell = 0; cell < size; cell++) weighted[cell] = later.modeOfCell[to * size + cell]! * capacity[cell]!;
     for (let from = 0; from < size; from++) {
       let sum = 0;
       for (let cell = 0; cell < size; cell++) sum += weighted[cell]! * earlier.modeOfCell[from * size + cell]!;

@@ -1,0 +1,163 @@
+import { gasConstantJPerMolK, zeroCelsiusK } from '../quantities/constants.js';
+import { assertWithin, DomainError } from '../quantities/errors.js';
+import type { DamagePair } from './thermal-figures.js';
+
+/** Damage integrals at which skin shows a burn of the first degree, and one of the third (1 is the second degree).
+ *  @source Henriques1947 (read where other texts quote it) */
+export const firstDegreeDamage = 0.53;
+export const secondDegreeDamage = 1;
+export const fullThicknessDamage = 1e4;
+
+/** Arrhenius damage integral of a temperature history: integral of A exp(-Ea / (R T)) dt; exp(-integral) is the share unharmed.
+ *  Between samples the rate is taken as exponential in time, which is exact for a temperature linear in time up to its curvature in
+ *  1/T. Temperatures are not capped: above boiling the history itself no longer holds, and the caller reports that.
+ *  @source Henriques1947 */
+export function damageIntegral(timesS: ArrayLike<number>, temperaturesC: ArrayLike<number>, pair: DamagePair): number {
+  return Math.min(Math.exp(sumDamage(timesS, temperaturesC, null, 0, pair, { ln: 0, perJ: 0 }).ln), Number.MAX_VALUE);
+}
+
+/** Time at a constant temperature until the damage integral is 1. */
+export function timeToDamageS(pair: DamagePair, temperatureC: number): number {
+  assertWithin('temperatureC', temperatureC, -zeroCelsiusK + 1, 5000);
+  return Math.exp(activationK(pair) / (temperatureC + zeroCelsiusK) - Math.log(pair.frequencyFactorPerS));
+}
+
+/** Temperature at which the damage rate is 1 per second. Letters: Ea / (R ln A). */
+export function criticalTemperatureC(pair: DamagePair): number {
+  return activationK(pair) / Math.log(pair.frequencyFactorPerS) - zeroCelsiusK;
+}
+
+/** Minutes at 43 C with the same effect: sum of R^(43 - T) dt with R = 0.5 above 43 C and 0.25 below, over histories that are linear
+ *  between samples (integrated exactly). Above about 60 C the rule is far outside the data it summarizes.
+ *  @source SaparetoDewey1984 */
+export function cem43Min(timesS: ArrayLike<number>, temperaturesC: ArrayLike<number>): number {
+  let sumS = 0;
+  for (let i = 1; i < timesS.length; i++) {
+    const durationS = timesS[i]! - timesS[i - 1]!;
+    const [from, to] = [temperaturesC[i - 1]! - 43, temperaturesC[i]! - 43];
+    if (from < 0 !== to < 0) {
+      const crossing = from / (from - to);
+      sumS += durationS * (crossing * meanFactor(from, 0) + (1 - crossing) * meanFactor(0, to));
+    } else sumS += durationS * meanFactor(from, to);
+  }
+  return sumS / 60;
+}
+
+function meanFactor(from: number, to: number): number {
+  const base = from + to < 0 ? Math.log(4) : Math.log(2);
+  return meanExponential(base * from, base * to);
+}
+
+// Mean of exp(x) while x runs linearly from one end to the other.
+function meanExponential(from: number, to: number): number {
+  const span = to - from;
+  return Math.exp(from) * (Math.abs(span) < 1e-8 ? 1 + span / 2 : Math.expm1(span) / span);
+}
+
+export interface DamageFluenceRequest {
+  readonly timesS: ArrayLike<number>;
+  /** Without light, by time. */
+  readonly baselineC: ArrayLike<number>;
+  /** Rise per J/cm2, by time. */
+  readonly responseK: ArrayLike<number>;
+  readonly pair: DamagePair;
+  /** Damage integral to reach; default 1. */
+  readonly target?: number;
+  /** Default 1000. */
+  readonly maxFluenceJPerCm2?: number;
+}
+
+const maxSteps = 80;
+const usualDurationS = 1e-3; // scales the effective temperature only; any duration gives the same root
+
+/** Fluence at which baseline + fluence x response reaches a damage integral: null when none up to the greatest does, 0 when the
+ *  baseline alone does. Newton's steps are taken not on ln(integral) but on the effective temperature
+ *  Ea / (R ln(A t / integral)), which is nearly linear in fluence, and are kept inside a bracket. Relative accuracy 1e-7. */
+export function fluenceForDamage(request: DamageFluenceRequest): number | null {
+  const { timesS, baselineC, responseK, pair, target = 1, maxFluenceJPerCm2 = 1000 } = request;
+  const activation = activationK(pair);
+  const lnScale = Math.log(pair.frequencyFactorPerS * usualDurationS);
+  const wantedK = activation / (lnScale - Math.log(target));
+  const peakPerJ = greatest(responseK);
+  const damage: DamageSum = { ln: 0, perJ: 0 };
+  const evaluate = (fluence: number): DamageSum => sumDamage(timesS, baselineC, responseK, fluence, pair, damage);
+  const lnTarget = Math.log(target);
+  if (!(peakPerJ > 0)) return evaluate(0).ln >= lnTarget ? 0 : null;
+  let low = 0;
+  let high = maxFluenceJPerCm2;
+  let fluence = Math.min(high, Math.max(wantedK - zeroCelsiusK - greatest(baselineC), 1) / peakPerJ);
+  for (let step = 0; step < maxSteps; step++) {
+    const { ln, perJ } = evaluate(fluence);
+    if (ln >= lnTarget) high = fluence;
+    else if (fluence === maxFluenceJPerCm2) return null;
+    else low = fluence;
+    const reachedK = activation / Math.max(lnScale - ln, 1);
+    const next = fluence + ((wantedK - reachedK) * activation) / (reachedK * reachedK * perJ);
+    if (Math.abs(next - fluence) <= 1e-7 * fluence || high - low <= 1e-7 * high) return Math.min(next, maxFluenceJPerCm2);
+    if (next <= 0 && evaluate(0).ln >= lnTarget) return 0;
+    if (next > low && next < high) fluence = next;
+    else if (next >= high && high === maxFluenceJPerCm2) fluence = high;
+    else fluence = 0.5 * (low + high);
+  }
+  throw new DomainError('not-converged', 'the search for a damaging fluence did not converge', { iterations: maxSteps });
+}
+
+function activationK(pair: DamagePair): number {
+  return pair.activationEnergyJPerMol / gasConstantJPerMolK;
+}
+
+function greatest(values: ArrayLike<number>): number {
+  let result = Number.NEGATIVE_INFINITY;
+  for (let i = 0; i < values.length; i++) if (values[i]! > result) result = values[i]!;
+  return result;
+}
+
+/** Logarithm of a damage integral and its derivative with respect to fluence. */
+interface DamageSum {
+  ln: number;
+  perJ: number;
+}
+
+const negligible = -36; // exp(-36) = 2e-16 of the fastest rate
+
+// Damage integral of baseline + fluence x rise, summed relative to the fastest rate so that nothing overflows.
+function sumDamage(
+  timesS: ArrayLike<number>,
+  baselineC: ArrayLike<number>,
+  riseK: ArrayLike<number> | null,
+  fluence: number,
+  pair: DamagePair,
+  into: DamageSum,
+): DamageSum {
+  const activation = activationK(pair);
+  const count = timesS.length;
+  let hottestC = 1 - zeroCelsiusK;
+  for (let i = 0; i < count; i++) {
+    const temperatureC = riseK === null ? baselineC[i]! : baselineC[i]! + fluence * riseK[i]!;
+    if (temperatureC > hottestC) hottestC = temperatureC;
+  }
+  const fastest = -activation / (hottestC + zeroCelsiusK);
+  let sum = 0;
+  let slope = 0;
+  let [earlier, earlierRate, earlierPerJ] = [0, 0, 0];
+  for (let i = 0; i < count; i++) {
+    const rise = riseK === null ? 0 : riseK[i]!;
+    const kelvin = Math.max(baselineC[i]! + fluence * rise + zeroCelsiusK, 1);
+    const later = -activation / kelvin - fastest;
+    const laterRate = later < negligible ? 0 : Math.exp(later);
+    const laterPerJ = (laterRate * activation * rise) / (kelvin * kelvin);
+    if (i > 0 && laterRate + earlierRate > 0) {
+      const durationS = timesS[i]! - timesS[i - 1]!;
+      const span = later - earlier;
+      const mean = Math.abs(span) < 1e-4 ? 0.5 * (earlierRate + laterRate) : (laterRate - earlierRate) / span;
+      sum += mean * durationS;
+      slope += (mean * durationS * (earlierPerJ + laterPerJ)) / (earlierRate + laterRate);
+    }
+    earlier = later;
+    earlierRate = laterRate;
+    earlierPerJ = laterPerJ;
+  }
+  into.ln = Math.log(pair.frequencyFactorPerS) + fastest + Math.log(sum);
+  into.perJ = slope / sum;
+  return into;
+}
