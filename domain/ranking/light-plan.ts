@@ -1,0 +1,75 @@
+import type { Spot } from '../beam/spot.js';
+import { absorptionOf } from '../spectra/chromophore.js';
+import type { OpticalLayer } from '../tissue/optical-layer.js';
+import { skinLayers } from '../tissue/skin.js';
+import { type LightSolution, solveLight } from '../transport/layered-solver.js';
+import type { ExposureModel } from './exposure-model.js';
+
+/** What one wavelength deposits under one spot, per unit incident fluence. */
+export interface Deposit {
+  /** Heat per volume in each cell of the heat grid over incident fluence, 1/cm. */
+  readonly sourcePerCm: Float64Array;
+  /** The same in the lesion, where the target's epidermis holds another amount of pigment; else the same array. */
+  readonly lesionSourcePerCm: Float64Array;
+  /** Fluence rate at the target's center over incident irradiance. */
+  readonly fluenceRatioAtTarget: number;
+  /** Heat per volume of the heater beyond that of the tissue it replaces, 1/cm; 0 without inclusion. */
+  readonly heaterExcessPerCm: number;
+  /** Heat per volume of a melanosome at the basal layer, 1/cm. */
+  readonly melanosomePerCm: number;
+  /** Absorption of the target over that of the epidermis. */
+  readonly absorptionContrast: number;
+}
+
+/** One wavelength in one skin: optics solved once, every spot after that at little cost. */
+export interface LightPlan {
+  readonly wavelengthNm: number;
+  depositUnder(spot: Spot): Deposit;
+}
+
+function absorptionAtDepth(layers: readonly OpticalLayer[], depthUm: number): number {
+  let bottomUm = 0;
+  for (const layer of layers) {
+    bottomUm += layer.thicknessUm;
+    if (depthUm < bottomUm) return layer.absorptionPerCm;
+  }
+  return layers[layers.length - 1]!.absorptionPerCm;
+}
+
+/** Solves the light of one wavelength. Throws: out-of-range where a chromophore's table ends. */
+export function planLight(model: ExposureModel, wavelengthNm: number): LightPlan {
+  const { skin, target, reference, remarks, grid } = model;
+  const layers = skinLayers(skin, wavelengthNm, reference, remarks);
+  const light: LightSolution = solveLight(layers, { accuracy: 'ranking' });
+  const lesionFraction = target.lesionMelanosomeFraction;
+  const lesionLayers =
+    lesionFraction === undefined || lesionFraction === skin.melanosomeFraction
+      ? layers
+      : skinLayers({ ...skin, melanosomeFraction: lesionFraction }, wavelengthNm, reference, remarks);
+  const lesionLight = lesionLayers === layers ? light : solveLight(lesionLayers, { accuracy: 'ranking' });
+  const heaterPerCm = target.heaterAbsorptionPerCm(wavelengthNm);
+  const melanosomePerCm =
+    skin.melanosomeFraction > 0 || target.melanosomesAreTarget ? melanosomeAbsorption(model, wavelengthNm) : 0;
+  const epidermisPerCm = layers[0]!.absorptionPerCm;
+  const backgroundPerCm = absorptionAtDepth(lesionLayers, target.depthUm);
+  const depthsUm = [skin.epidermisThicknessUm, target.depthUm];
+  return {
+    wavelengthNm,
+    depositUnder(spot) {
+      const [basalRatio, targetRatio] = lesionLight.fluenceRatios(spot, depthsUm) as unknown as [number, number];
+      const sourcePerCm = light.absorbedPerCm(spot, grid.facesUm);
+      return {
+        sourcePerCm,
+        lesionSourcePerCm: lesionLight === light ? sourcePerCm : lesionLight.absorbedPerCm(spot, grid.facesUm),
+        fluenceRatioAtTarget: targetRatio,
+        heaterExcessPerCm: heaterPerCm === null ? 0 : (heaterPerCm - backgroundPerCm) * targetRatio,
+        melanosomePerCm: melanosomePerCm * basalRatio,
+        absorptionContrast: (heaterPerCm ?? backgroundPerCm) / epidermisPerCm,
+      };
+    },
+  };
+}
+
+function melanosomeAbsorption({ reference, remarks }: ExposureModel, wavelengthNm: number): number {
+  return absorptionOf(reference, 'melanosome', wavelengthNm, remarks);
+}
