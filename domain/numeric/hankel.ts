@@ -1,7 +1,7 @@
 import { gaussLegendre } from './quadrature.js';
 
 /** Weights W such that the integral over k of F dC equals sum W_i F(k_i), for a function F given on a grid that is even in ln k.
- *  F is the cubic spline in ln k through its samples (flat at both ends), constant below the grid and zero above it.
+ *  F is the cubic spline in ln k through its samples (flat at both ends), constant below the grid; above it F falls to zero so slowly that C counts as 1.
  *  `powerBelow` is C(k): the part of a beam's on-axis transform below spatial frequency k, rising from 0 towards 1
  *  (1 - J0(k a) for a flat round beam). Integrated by parts, so that only C itself is needed.
  *  Shape: one weight per grid point. `largestPhase` bounds the oscillation of C: it varies like cos(k largestPhase). */
@@ -25,7 +25,7 @@ export function hankelWeights(grid: Float64Array, powerBelow: (k: number) => num
       slopeParts[i + 1]! -= c * (3 * x * x - 2 * x);
     }
   }
-  valueParts[count - 1]! += powerBelow(grid[count - 1]!);
+  valueParts[count - 1]! += 1;
   addSlopes(valueParts, slopeParts);
   return valueParts;
 }

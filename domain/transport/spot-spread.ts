@@ -1,86 +1,151 @@
-import { bandedPosition, makeBanded, solveBanded } from '../numeric/banded.js';
+import { type BandedMatrix, bandedPosition, makeBanded, solveBanded } from '../numeric/banded.js';
 import { hankelWeights } from '../numeric/hankel.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
 import { type BeamProfile, beamTransform } from './beam-profile.js';
-import { fresnelMoments } from './fresnel.js';
+import { type CollimatedBeam, collimatedBeam } from './collimated.js';
+import { faceCondition } from './harmonic-faces.js';
+import { type HarmonicModes, harmonicModes, reflectionSigns, type ScaledLayer, scaleLayer } from './harmonic-modes.js';
+import { harmonicCount, modeCount } from './harmonics.js';
 
-const frequencies = Float64Array.from({ length: 20 }, (_, i) => 0.05 * 1e4 ** (i / 19)); // per cm
-
-/** On-axis ratio of finite-spot to broad-beam fluence by the delta-P1 approximation. */
+/** Lateral spread of light: how fluence on the axis of a finite beam compares with that of a broad one. */
 export interface SpotSpread {
+  /** Ratio of finite-spot to broad-beam fluence at points given by layer and depth below that layer's top. */
   ratios(profile: BeamProfile, layers: Int32Array, belowTopsUm: Float64Array): Float64Array;
 }
 
-export function solveSpotSpread(layers: readonly OpticalLayer[]): SpotSpread {
-  const n = layers.length;
-  const scaled = layers.map((l) => {
-    const g = l.anisotropy / (1 + l.anisotropy);
-    const scattering = l.scatteringPerCm * (1 - l.anisotropy ** 2);
-    const extinction = Math.max(1e-6, l.absorptionPerCm + scattering);
-    const transport = Math.max(1e-6, l.absorptionPerCm + scattering * (1 - g));
-    return { g, scattering, extinction, transport, absorption: l.absorptionPerCm, d: l.thicknessUm * 1e-4 };
-  });
-  const arriving: number[] = [1];
-  for (let j = 0; j < n; j++) arriving.push(arriving[j]! * Math.exp(-scaled[j]!.extinction * scaled[j]!.d));
-  const topFactor = 2 * fresnelMoments(layers[0]!.refractiveIndex, 1).boundaryFactor;
-  const bottomFactor = 2 * fresnelMoments(layers[n - 1]!.refractiveIndex, 1).boundaryFactor;
+const broadFrequency = 1e-3; // per cm; stands for zero
 
-  const solveAt = (k: number) => {
-    const parts = scaled.map((s, j) => {
-      const diffusion = 1 / (3 * s.transport);
-      const kappa2 = s.absorption / diffusion + k * k;
-      const source = 3 * s.scattering * (s.transport + s.g * s.extinction) * arriving[j]!;
-      let denominator = s.extinction ** 2 - kappa2;
-      if (Math.abs(denominator) < 1e-6 * kappa2) denominator = 1e-6 * kappa2;
-      return { kappa: Math.sqrt(kappa2), diffusion, particular: -source / denominator };
-    });
-    // phi = a e^{-kz} + b e^{-k(d-z)} + particular e^{-mu z}
-    const matrix = makeBanded(2 * n, Math.min(2 * n - 1, 3), Math.min(2 * n - 1, 3));
-    const right = new Float64Array(2 * n);
-    const add = (row: number, j: number, z: number, phi: number, flux: number): void => {
-      const { kappa, diffusion, particular } = parts[j]!;
-      const s = scaled[j]!;
-      const e1 = Math.exp(-kappa * z);
-      const e2 = Math.exp(-kappa * (s.d - z));
-      const e0 = Math.exp(-s.extinction * z);
-      matrix.values[bandedPosition(matrix, row, 2 * j)]! += e1 * (phi + flux * diffusion * kappa);
-      matrix.values[bandedPosition(matrix, row, 2 * j + 1)]! += e2 * (phi - flux * diffusion * kappa);
-      const ownFlux = diffusion * (particular * s.extinction + 3 * s.g * s.scattering * arriving[j]!);
-      right[row]! -= e0 * (phi * particular + flux * ownFlux);
-    };
-    add(0, 0, 0, 1, topFactor);
-    for (let j = 0; j + 1 < n; j++) {
-      add(2 * j + 1, j, scaled[j]!.d, 1, 0);
-      add(2 * j + 1, j + 1, 0, -1, 0);
-      add(2 * j + 2, j, scaled[j]!.d, 0, 1);
-      add(2 * j + 2, j + 1, 0, 0, -1);
-    }
-    add(2 * n - 1, n - 1, scaled[n - 1]!.d, 1, -bottomFactor);
-    const amplitudes = solveBanded(matrix, right);
-    return (j: number, z: number): number => {
-      const { kappa, particular } = parts[j]!;
-      const s = scaled[j]!;
-      return (
-        amplitudes[2 * j]! * Math.exp(-kappa * z) +
-        amplitudes[2 * j + 1]! * Math.exp(-kappa * (s.d - z)) +
-        particular * Math.exp(-s.extinction * z)
-      );
-    };
-  };
-  const broad = solveAt(1e-4);
-  const solutions = Array.from(frequencies, solveAt);
+function frequencyGrid(count: number, least: number, greatest: number): Float64Array {
+  return Float64Array.from({ length: count }, (_, i) => least * (greatest / least) ** (i / (count - 1)));
+}
+
+const frequencies = frequencyGrid(20, 0.05, 1000); // per cm
+
+/** Third-degree spherical harmonics (P3) at every lateral frequency of one grid, joined through all layers with Fresnel
+ *  reflection and refraction. The beam itself keeps its edges; only what it scatters spreads.
+ *  @source Davison1957 chapter 12; Liemert2012 (layered media, Hankel transform) */
+export function solveSpotSpread(layers: readonly OpticalLayer[]): SpotSpread {
+  const scaled = layers.map(scaleLayer);
+  const beam = collimatedBeam(
+    layers,
+    scaled.map((layer) => layer.extinction * layer.thicknessCm),
+  );
+  const faces = layers.map((layer, j) => {
+    const above = layers[j - 1]?.refractiveIndex ?? 1;
+    const below = layers[j + 1]?.refractiveIndex ?? 1;
+    return { top: faceCondition(layer.refractiveIndex, above, true), bottom: faceCondition(layer.refractiveIndex, below, false) };
+  });
+  const broad = solveFrequency(scaled, faces, beam, broadFrequency);
+  const solutions = Array.from(frequencies, (k) => solveFrequency(scaled, faces, beam, k));
+
   return {
     ratios: (profile, where, belowTopsUm) => {
       const { powerBelow, reachCm } = beamTransform(profile);
       const weights = hankelWeights(frequencies, powerBelow, reachCm);
       return Float64Array.from(where, (j, i) => {
-        const z = belowTopsUm[i]! * 1e-4;
-        const beam = arriving[j]! * Math.exp(-scaled[j]!.extinction * z);
-        let diffuse = 0;
-        for (let q = 0; q < weights.length; q++) diffuse += weights[q]! * solutions[q]!(j, z);
-        const whole = beam + broad(j, z);
-        return whole > 0 ? Math.min(1, Math.max(0, (beam + diffuse) / whole)) : 1;
+        const layer = scaled[j]!;
+        const depth = belowTopsUm[i]! * 1e-4;
+        const rest = Math.max(0, layer.thicknessCm - depth);
+        const down = beam.down[j]! * Math.exp(-layer.extinction * depth);
+        const up = beam.up[j]! * Math.exp(-layer.extinction * rest);
+        let scattered = 0;
+        for (let q = 0; q < weights.length; q++)
+          scattered += weights[q]! * scatteredFluence(solutions[q]!, j, depth, rest, down, up);
+        const whole = down + up + scatteredFluence(broad, j, depth, rest, down, up);
+        return whole > 0 ? Math.min(1, Math.max(0, (down + up + scattered) / whole)) : 1;
       });
     },
   };
+}
+
+/** Amplitudes of scattered fluence in every layer at one frequency: per layer, each mode downward and upward, then the beam's own. */
+interface FrequencySolution {
+  readonly kappas: Float64Array;
+  readonly downward: Float64Array;
+  readonly upward: Float64Array;
+  readonly beamFluences: Float64Array;
+}
+
+function scatteredFluence(s: FrequencySolution, layer: number, depth: number, rest: number, down: number, up: number): number {
+  let sum = s.beamFluences[layer]! * (down + up);
+  for (let i = layer * modeCount; i < (layer + 1) * modeCount; i++) {
+    const kappa = s.kappas[i]!;
+    sum += s.downward[i]! * Math.exp(-kappa * depth) + s.upward[i]! * Math.exp(-kappa * rest);
+  }
+  return sum;
+}
+
+type Faces = readonly { top: ReturnType<typeof faceCondition>; bottom: ReturnType<typeof faceCondition> }[];
+
+function solveFrequency(layers: readonly ScaledLayer[], faces: Faces, beam: CollimatedBeam, k: number): FrequencySolution {
+  const modes = layers.map((layer) => harmonicModes(layer, k));
+  const size = 2 * modeCount * layers.length;
+  const band = Math.min(size - 1, 3 * modeCount - 1);
+  const matrix = makeBanded(size, band, band);
+  const right = new Float64Array(size);
+  const last = layers.length - 1;
+  for (let j = 0; j <= last; j++) {
+    const topRow = 2 * modeCount * j;
+    const bottomRow = topRow + modeCount;
+    addFace(matrix, right, topRow, faces[j]!.top.own, layers[j]!, modes[j]!, beam, j, true);
+    if (j > 0) addFace(matrix, right, topRow, faces[j]!.top.beyond, layers[j - 1]!, modes[j - 1]!, beam, j - 1, false);
+    addFace(matrix, right, bottomRow, faces[j]!.bottom.own, layers[j]!, modes[j]!, beam, j, false);
+    if (j < last) addFace(matrix, right, bottomRow, faces[j]!.bottom.beyond, layers[j + 1]!, modes[j + 1]!, beam, j + 1, true);
+  }
+  solveBanded(matrix, right);
+  const count = modeCount * layers.length;
+  const solution: FrequencySolution = {
+    kappas: new Float64Array(count),
+    downward: new Float64Array(count),
+    upward: new Float64Array(count),
+    beamFluences: new Float64Array(layers.length),
+  };
+  for (let j = 0; j <= last; j++) {
+    const toFluence = Math.SQRT2 * layers[j]!.index2;
+    solution.beamFluences[j] = toFluence * modes[j]!.beamAnswer[0]!;
+    for (let i = 0; i < modeCount; i++) {
+      const at = j * modeCount + i;
+      const factor = toFluence * modes[j]!.vectors[i * harmonicCount]!;
+      solution.kappas[at] = modes[j]!.kappas[i]!;
+      solution.downward[at] = factor * right[2 * modeCount * j + i]!;
+      solution.upward[at] = factor * right[2 * modeCount * j + modeCount + i]!;
+    }
+  }
+  return solution;
+}
+
+/** Adds the moments of one layer's light at its top or bottom face to modeCount equations from `row` on. */
+function addFace(
+  matrix: BandedMatrix,
+  right: Float64Array,
+  row: number,
+  moments: Float64Array,
+  layer: ScaledLayer,
+  modes: HarmonicModes,
+  beam: CollimatedBeam,
+  index: number,
+  atTop: boolean,
+): void {
+  const across = Math.exp(-layer.extinction * layer.thicknessCm);
+  const down = atTop ? beam.down[index]! : beam.down[index]! * across;
+  const up = atTop ? beam.up[index]! * across : beam.up[index]!;
+  const column = 2 * modeCount * index;
+  for (let r = 0; r < modeCount; r++) {
+    const base = r * harmonicCount;
+    for (let i = 0; i < modeCount; i++) {
+      let forward = 0;
+      let turned = 0;
+      for (let h = 0; h < harmonicCount; h++) {
+        const term = moments[base + h]! * modes.vectors[i * harmonicCount + h]!;
+        forward += term;
+        turned += term * reflectionSigns[h]!;
+      }
+      const fade = Math.exp(-modes.kappas[i]! * layer.thicknessCm);
+      matrix.values[bandedPosition(matrix, row + r, column + i)]! += atTop ? forward : forward * fade;
+      matrix.values[bandedPosition(matrix, row + r, column + modeCount + i)]! += atTop ? turned * fade : turned;
+    }
+    for (let h = 0; h < harmonicCount; h++) {
+      right[row + r]! -= moments[base + h]! * modes.beamAnswer[h]! * (down + up * reflectionSigns[h]!);
+    }
+  }
 }

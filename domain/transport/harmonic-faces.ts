@@ -1,0 +1,56 @@
+import { gaussLegendre } from '../numeric/quadrature.js';
+import { fresnelReflectance } from './fresnel.js';
+import { degrees, harmonicCount, harmonicsAt, modeCount, oddPositions, orders } from './harmonics.js';
+
+/** Condition on the light that leaves a face into one medium: own moments plus those of the medium beyond vanish.
+ *  Shape: modeCount rows (odd harmonics as test functions) x harmonicCount columns, row-major. */
+export interface FaceCondition {
+  readonly own: Float64Array;
+  readonly beyond: Float64Array;
+}
+
+const points = 12; // per smooth piece; moments of the reflectance good to 1e-6
+
+/** Marshak's condition with Fresnel reflection and refraction, on radiance over n^2: in the half-space of directions that leave
+ *  the face, the moments of what leaves equal those of what is reflected plus what comes through.
+ *  `downward` tells whether the medium lies below the face. The integral over cosines is cut at the critical angle.
+ *  @source Marshak1947; Haskell1994 section 2 (partial reflection) */
+export function faceCondition(ownIndex: number, beyondIndex: number, downward: boolean): FaceCondition {
+  const own = new Float64Array(modeCount * harmonicCount);
+  const beyond = new Float64Array(modeCount * harmonicCount);
+  const here = new Float64Array(harmonicCount);
+  const there = new Float64Array(harmonicCount);
+  const { nodes, weights } = gaussLegendre(points);
+  const critical = ownIndex > beyondIndex ? Math.sqrt(1 - (beyondIndex / ownIndex) ** 2) : 0;
+
+  const add = (mu: number, muBeyond: number, reflectance: number, step: number): void => {
+    harmonicsAt(mu, here);
+    harmonicsAt(muBeyond, there);
+    for (let row = 0; row < modeCount; row++) {
+      const tested = oddPositions[row]!;
+      const weight = step * here[tested]!;
+      for (let i = 0; i < harmonicCount; i++) {
+        if (orders[i] !== orders[tested]) continue;
+        const parity = (degrees[i]! + orders[i]!) % 2 === 0 ? 1 : -1;
+        const leaving = downward ? 1 : parity;
+        const arriving = downward ? parity : 1;
+        own[row * harmonicCount + i]! += weight * here[i]! * (leaving - reflectance * arriving);
+        beyond[row * harmonicCount + i]! -= weight * there[i]! * (1 - reflectance) * leaving;
+      }
+    }
+  };
+  for (let q = 0; q < points; q++) {
+    const x = (1 + nodes[q]!) / 2;
+    if (critical > 0) add(critical * x, 0, 1, (critical * weights[q]!) / 2);
+    // beyond the critical angle the cosine in the rarer medium is the smooth variable
+    if (ownIndex >= beyondIndex) {
+      const ratio = beyondIndex / ownIndex;
+      const mu = Math.sqrt(1 - ratio * ratio * (1 - x * x));
+      add(mu, x, fresnelReflectance(ownIndex, beyondIndex, mu), (ratio * ratio * x * weights[q]!) / (2 * mu));
+    } else {
+      const ratio = ownIndex / beyondIndex;
+      add(x, Math.sqrt(1 - ratio * ratio * (1 - x * x)), fresnelReflectance(ownIndex, beyondIndex, x), weights[q]! / 2);
+    }
+  }
+  return { own, beyond };
+}

@@ -1,0 +1,81 @@
+/** Real spherical harmonics up to degree 3, symmetric about the plane of the beam axis and one lateral direction:
+ *  Ybar_lm(mu) c_m(phi), with Ybar normalized over mu in [-1, 1] and c_0 = 1, c_m = sqrt(2) cos(m phi).
+ *  A radiance that varies like exp(i k x) is kept with factors i^m taken out, which makes everything real.
+ *  Shape: entry (l, m) stands at l (l + 1)/2 + m. @source Davison1957 section 12.1 (moments of the transfer equation) */
+export const degree = 3;
+export const harmonicCount = ((degree + 1) * (degree + 2)) / 2;
+
+export function harmonicPosition(l: number, m: number): number {
+  return (l * (l + 1)) / 2 + m;
+}
+
+const members: { l: number; m: number }[] = [];
+for (let l = 0; l <= degree; l++) for (let m = 0; m <= l; m++) members.push({ l, m });
+
+/** Positions of the harmonics even (l + m even) and odd under reflection of depth. */
+export const evenPositions = members.flatMap(({ l, m }, i) => ((l + m) % 2 === 0 ? [i] : []));
+export const oddPositions = members.flatMap(({ l, m }, i) => ((l + m) % 2 === 1 ? [i] : []));
+export const modeCount = oddPositions.length;
+export const degrees = members.map(({ l }) => l);
+export const orders = members.map(({ m }) => m);
+
+/** Coupling of (l, m) with (l - 1, m) by the cosine of depth. */
+export function axialCoupling(l: number, m: number): number {
+  return Math.sqrt((l * l - m * m) / (4 * l * l - 1));
+}
+
+/** Coupling of (l, m) with (l + 1, m + side) by the lateral direction, side = +1 or -1, its sign left out. */
+export function lateralCoupling(l: number, m: number, side: 1 | -1): number {
+  const turned = side * m;
+  const share = Math.min(m, m + side) === 0 ? Math.SQRT1_2 : 0.5;
+  return share * Math.sqrt(((l + turned + 1) * (l + turned + 2)) / ((2 * l + 1) * (2 * l + 3)));
+}
+
+/** Raises a function of degree l to degree l + 1: the part of that degree of (axial mu + lateral direction) times it.
+ *  Shape: `from` and `to` are offsets of the blocks of degree l and l + 1 in `values` and `result`. */
+export function raiseDegree(
+  values: Float64Array,
+  l: number,
+  axial: number,
+  lateral: number,
+  result: Float64Array,
+  factor: number,
+): void {
+  const from = harmonicPosition(l, 0);
+  const to = harmonicPosition(l + 1, 0);
+  const table = raising[l]!;
+  for (let m = 0; m <= l + 1; m++) {
+    let sum = 0;
+    if (m <= l) sum += axial * table[3 * m]! * values[from + m]!;
+    if (m >= 1) sum += lateral * table[3 * m + 1]! * values[from + m - 1]!;
+    if (m + 1 <= l) sum += lateral * table[3 * m + 2]! * values[from + m + 1]!;
+    result[to + m] = sum * factor;
+  }
+}
+
+/** Per degree: for each target m, couplings from (l, m), (l, m - 1) and (l, m + 1). */
+const raising = Array.from({ length: degree }, (_, l) =>
+  Float64Array.from({ length: 3 * (l + 2) }, (_, i) => {
+    const m = Math.floor(i / 3);
+    if (i % 3 === 0) return m <= l ? axialCoupling(l + 1, m) : 0;
+    if (i % 3 === 1) return m >= 1 ? lateralCoupling(l, m - 1, 1) : 0;
+    return m + 1 <= l ? lateralCoupling(l, m + 1, -1) : 0;
+  }),
+);
+
+/** Values of every Ybar_lm at cosine mu, 0 <= mu <= 1, written into `result`. */
+export function harmonicsAt(mu: number, result: Float64Array): void {
+  const sine = Math.sqrt(Math.max(0, 1 - mu * mu));
+  let sectoral = Math.SQRT1_2;
+  for (let m = 0; m <= degree; m++) {
+    if (m > 0) sectoral *= sine * Math.sqrt((2 * m + 1) / (2 * m));
+    let below = 0;
+    let value = sectoral;
+    for (let l = m; l <= degree; l++) {
+      result[harmonicPosition(l, m)] = value;
+      const next = (mu * value - (l > m ? axialCoupling(l, m) * below : 0)) / axialCoupling(l + 1, m);
+      below = value;
+      value = next;
+    }
+  }
+}
