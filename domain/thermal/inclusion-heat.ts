@@ -13,6 +13,9 @@ export interface InclusionShape {
   readonly outside: ThermalMaterial;
   /** Heat is deposited evenly within this radius; the inclusion's own unless given. */
   readonly heatedRadiusUm?: number;
+  /** Cells per radius at the edge, default 40, and growth of cells per distance from it, default 0.08. */
+  readonly cellsPerRadius?: number;
+  readonly growth?: number;
 }
 
 export interface InclusionHeatRequest extends InclusionShape {
@@ -66,13 +69,13 @@ export function prepareInclusionHeat(request: InclusionHeatRequest): InclusionHe
 /** Modes around an inclusion, from the shared store when they are there. The grid reaches six diffusion lengths of the longest time
  *  (rounded up to a power of ten, so that requests share it). Throws: out-of-range. */
 export function radialModes(shape: InclusionShape, longestS: number, modes: HeatModes = new HeatModes()): RadialModes {
-  const { geometry, radiusUm, inside, outside, heatedRadiusUm = radiusUm } = shape;
+  const { geometry, radiusUm, inside, outside, heatedRadiusUm = radiusUm, cellsPerRadius = 40, growth = 0.08 } = shape;
   assertWithin('radiusUm', radiusUm, 1e-4, 1e5);
   assertWithin('heatedRadiusUm', heatedRadiusUm, 1e-4, 1e5);
   const decade = Math.ceil(Math.log10(longestS) - 1e-9);
   const figures = [inside, outside].map((m) => `${m.conductivityWPerMK} ${m.densityKgPerM3 * m.specificHeatJPerKgK}`);
-  const key = ['radial', geometry, radiusUm, heatedRadiusUm, decade, ...figures].join(' ');
-  return modes.keyed(key, () => makeRadialModes({ ...shape, heatedRadiusUm }, 10 ** decade));
+  const key = ['radial', geometry, radiusUm, heatedRadiusUm, cellsPerRadius, growth, decade, ...figures].join(' ');
+  return modes.keyed(key, () => makeRadialModes({ ...shape, heatedRadiusUm, cellsPerRadius, growth }, 10 ** decade));
 }
 
 /** Weight of each mode in the temperature at a radius. At the center the parabola through the innermost two cells is used. */
@@ -90,11 +93,8 @@ export function modalWeights(radial: RadialModes, radiusUm: number): Float64Arra
   });
 }
 
-const cellsPerRadius = 40; // at the edge; 0.1 % of the closed forms at the center of a sphere
-const growth = 0.08;
-
 function makeRadialModes(shape: Required<InclusionShape>, longestS: number): RadialModes {
-  const { geometry, radiusUm, heatedRadiusUm, inside, outside } = shape;
+  const { geometry, radiusUm, heatedRadiusUm, inside, outside, cellsPerRadius, growth } = shape;
   const spread = Math.max(diffusivityMm2PerS(inside), diffusivityMm2PerS(outside));
   const largestUm = Math.max(radiusUm, heatedRadiusUm);
   const edges = [...new Set([radiusUm, heatedRadiusUm])].sort((a, b) => a - b);
