@@ -7,11 +7,13 @@ const curvedRings = 64; // rings over which a profile that is not flat is averag
 export function ringRadiiCm(beam: BeamProfile): number[] {
   const spaced = (from: number, to: number) =>
     Array.from({ length: curvedRings }, (_, i) => from + ((to - from) * (i + 1)) / curvedRings);
+  // Finer toward the axis, where unscattered light falls.
+  const fromAxis = (to: number) => Array.from({ length: curvedRings }, (_, i) => to * ((i + 1) / curvedRings) ** 2);
   switch (beam.shape) {
     case 'circle':
       return [beam.diameterMm / 20];
     case 'gaussian':
-      return spaced(0, (beam.diameterMm / 20) * 2.7); // exp(-2 * 2.7^2) = 5e-7 of the axis beyond
+      return fromAxis((beam.diameterMm / 20) * 2.7); // exp(-2 * 2.7^2) = 5e-7 of the axis beyond
     case 'square':
       return [beam.widthMm / 20, ...spaced(beam.widthMm / 20, (beam.widthMm / 20) * Math.SQRT2)];
     case 'rectangle': {
@@ -19,9 +21,10 @@ export function ringRadiiCm(beam: BeamProfile): number[] {
       return [near, ...spaced(near, far), ...spaced(far, Math.hypot(near, far))];
     }
     case 'measured':
-      return beam.radiiMm.flatMap((radius, i) => {
+      return beam.radiiMm.flatMap((radiusMm, i) => {
         const from = (beam.radiiMm[i - 1] ?? 0) / 10;
-        return radius > 0 ? Array.from({ length: 8 }, (_, k) => from + ((radius / 10 - from) * (k + 1)) / 8) : [];
+        if (from === 0) return radiusMm > 0 ? fromAxis(radiusMm / 10) : [];
+        return Array.from({ length: 8 }, (_, k) => from + ((radiusMm / 10 - from) * (k + 1)) / 8);
       });
   }
 }

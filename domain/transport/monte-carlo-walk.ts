@@ -36,7 +36,7 @@ export function tallyLength(plan: WalkPlan): number {
 const ziggurat = exponentialZiggurat();
 const rouletteBelow = 1e-3; // weight under which one photon in ten goes on; unbiased for any value
 const rouletteFactor = 10;
-const mostSteps = 1e7; // a photon caught in a layer that neither absorbs nor lets go; its weight is tallied as abandoned
+const mostSteps = 1e6; // a photon caught in a layer that neither absorbs nor lets go; its weight is tallied as abandoned
 
 /** Walks one chunk of photons of a pencil beam down the axis and adds up what happens to them.
  *  Shape: places of `tallyPlaces`, then absorbed weight of each layer, then path length times weight in each ring of each depth bin

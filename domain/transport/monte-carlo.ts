@@ -142,14 +142,14 @@ function scoreSlice(depth: number, layers: readonly OpticalLayer[], tops: readon
 }
 
 /** Figures of one chunk: fluence ratios (beam by beam, depth within), diffuse reflectance, transmittance, roulette gain,
- *  abandoned weight, then absorbed fraction of each layer; all per photon that reaches the surface. */
+ *  abandoned weight, absorbed fraction of each layer and of all together; all per photon that reaches the surface. */
 export function runChunk(plan: RunPlan, seed: number, chunk: number, photons: number): Float64Array {
   const { walk, weights, binOfDepth, question } = plan;
   const scores = walkPhotons(walk, seed, chunk, photons);
   const rings = walk.ringRadiiCm.length + 1;
   const start = tallyPlaces.absorbed + walk.layerCount;
   const depths = question.depthsUm.length;
-  const figures = new Float64Array(weights.length * depths + start);
+  const figures = new Float64Array(figureCount(plan));
   for (let beam = 0; beam < weights.length; beam++) {
     for (let depth = 0; depth < depths; depth++) {
       const bin = binOfDepth[depth]!;
@@ -159,12 +159,13 @@ export function runChunk(plan: RunPlan, seed: number, chunk: number, photons: nu
     }
   }
   for (let i = 0; i < start; i++) figures[weights.length * depths + i] = scores[i]! / photons;
+  for (let i = tallyPlaces.absorbed; i < start; i++) figures[figures.length - 1]! += scores[i]! / photons;
   return figures;
 }
 
 /** How many figures `runChunk` gives. */
 export function figureCount(plan: RunPlan): number {
-  return plan.weights.length * plan.question.depthsUm.length + tallyPlaces.absorbed + plan.walk.layerCount;
+  return plan.weights.length * plan.question.depthsUm.length + tallyPlaces.absorbed + plan.walk.layerCount + 1;
 }
 
 /** Greatest standard error over value among the fluence ratios; infinite while one of them is zero. */
@@ -185,7 +186,7 @@ export function answerRun(plan: RunPlan, tally: Tally, photonsPerChunk: number):
   const rest = plan.weights.length * depths;
   const layers = Array.from({ length: plan.walk.layerCount }, (_, i) => estimate(rest + tallyPlaces.absorbed + i));
   const mean = (place: number) => tally.means[rest + place]!;
-  const absorbed = layers.reduce((sum, layer) => sum + layer.value, 0);
+  const absorbed = estimate(tally.means.length - 1);
   const specularReflectance = plan.walk.specularReflectance;
   const { diffuseReflectance, transmittance, rouletteGain, abandoned } = tallyPlaces;
   return {
@@ -193,10 +194,16 @@ export function answerRun(plan: RunPlan, tally: Tally, photonsPerChunk: number):
     specularReflectance,
     diffuseReflectance: estimate(rest + diffuseReflectance),
     transmittance: estimate(rest + transmittance),
-    absorbedFraction: { value: absorbed, standardError: Math.hypot(...layers.map((layer) => layer.standardError)) },
+    absorbedFraction: absorbed,
     layerAbsorbedFractions: layers,
     fluenceRatios: plan.weights.map((_, beam) => Array.from({ length: depths }, (_, depth) => estimate(beam * depths + depth))),
     balanceError:
-      specularReflectance + mean(diffuseReflectance) + mean(transmittance) + absorbed + mean(abandoned) - mean(rouletteGain) - 1,
+      specularReflectance +
+      mean(diffuseReflectance) +
+      mean(transmittance) +
+      absorbed.value +
+      mean(abandoned) -
+      mean(rouletteGain) -
+      1,
   };
 }
