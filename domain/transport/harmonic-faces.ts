@@ -1,6 +1,6 @@
 import { gaussLegendre } from '../numeric/quadrature.js';
 import { fresnelReflectance } from './fresnel.js';
-import { degrees, harmonicCount, harmonicsAt, modeCount, oddPositions, orders } from './harmonics.js';
+import { harmonicCount, harmonicsAt, modeCount, oddPositions, reflectionSigns, testedPositions } from './harmonics.js';
 
 /** Condition on the light that leaves a face into one medium: own moments plus those of the medium beyond vanish.
  *  Shape: modeCount rows (odd harmonics as test functions) x harmonicCount columns, row-major. */
@@ -29,9 +29,8 @@ export function faceCondition(ownIndex: number, beyondIndex: number, downward: b
     for (let row = 0; row < modeCount; row++) {
       const tested = oddPositions[row]!;
       const weight = step * here[tested]!;
-      for (let i = 0; i < harmonicCount; i++) {
-        if (orders[i] !== orders[tested]) continue;
-        const parity = (degrees[i]! + orders[i]!) % 2 === 0 ? 1 : -1;
+      for (const i of testedPositions[row]!) {
+        const parity = reflectionSigns[i]!;
         const leaving = downward ? 1 : parity;
         const arriving = downward ? parity : 1;
         own[row * harmonicCount + i]! += weight * here[i]! * (leaving - reflectance * arriving);

@@ -3,12 +3,10 @@ import {
   axialCoupling,
   degree,
   degrees,
-  evenPositions,
   harmonicCount,
   harmonicPosition,
   lateralCoupling,
   modeCount,
-  oddPositions,
   orders,
   raiseDegree,
 } from './harmonics.js';
@@ -45,6 +43,8 @@ export interface HarmonicModes {
   readonly kappas: Float64Array;
   readonly vectors: Float64Array;
   readonly beamAnswer: Float64Array;
+  /** What is left of each mode across the whole layer. */
+  readonly fades: Float64Array;
 }
 
 const greatestTilt = 3000; // k nu above which modes would lie too close together for double precision (error about 1e-16 of its cube)
@@ -105,7 +105,8 @@ export function harmonicModes(layer: ScaledLayer, k: number): HarmonicModes {
   plane[3] = 1;
   keep(2, nu2);
 
-  return { kappas, vectors, beamAnswer: answerToBeam(layer, sigma, kappas, k) };
+  const fades = kappas.map((kappa) => Math.exp(-kappa * layer.thicknessCm));
+  return { kappas, vectors, beamAnswer: answerToBeam(layer, sigma, kappas, k), fades };
 }
 
 const turned = Array.from({ length: degree }, () => new Float64Array(harmonicCount));
@@ -199,6 +200,3 @@ function solveSmall(a: Float64Array, x: Float64Array): void {
     x[i] = sum / a[i * n + i]!;
   }
 }
-
-/** Sign of each harmonic under reflection of depth. */
-export const reflectionSigns = Float64Array.from({ length: harmonicCount }, (_, i) => (evenPositions.includes(i) ? 1 : -1));

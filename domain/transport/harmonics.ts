@@ -12,12 +12,19 @@ export function harmonicPosition(l: number, m: number): number {
 const members: { l: number; m: number }[] = [];
 for (let l = 0; l <= degree; l++) for (let m = 0; m <= l; m++) members.push({ l, m });
 
-/** Positions of the harmonics even (l + m even) and odd under reflection of depth. */
-export const evenPositions = members.flatMap(({ l, m }, i) => ((l + m) % 2 === 0 ? [i] : []));
+/** Positions of the harmonics odd under reflection of depth (l + m odd): as many as there are modes each way. */
 export const oddPositions = members.flatMap(({ l, m }, i) => ((l + m) % 2 === 1 ? [i] : []));
 export const modeCount = oddPositions.length;
 export const degrees = members.map(({ l }) => l);
 export const orders = members.map(({ m }) => m);
+
+/** Sign of each harmonic under reflection of depth. */
+export const reflectionSigns = Float64Array.from(members, ({ l, m }) => ((l + m) % 2 === 0 ? 1 : -1));
+
+/** For each odd harmonic, the positions of all harmonics of its order: the only ones a face couples with it. */
+export const testedPositions = oddPositions.map((tested) =>
+  Int32Array.from(members.flatMap(({ m }, i) => (m === orders[tested] ? [i] : []))),
+);
 
 /** Coupling of (l, m) with (l - 1, m) by the cosine of depth. */
 export function axialCoupling(l: number, m: number): number {

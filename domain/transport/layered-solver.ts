@@ -2,7 +2,7 @@ import { assertWithin, DomainError } from '../quantities/errors.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
 import type { BeamProfile } from './beam-profile.js';
 import { solveBroadBeam } from './broad-beam.js';
-import { solveSpotSpread } from './spot-spread.js';
+import { type SpotSpread, type SpreadPoints, solveSpotSpread } from './spot-spread.js';
 
 export interface LightOptions {
   readonly accuracy: 'ranking' | 'fine';
@@ -27,19 +27,19 @@ export interface LightSolution {
   penetrationDepthMm(spot: BeamProfile | null): number | null;
 }
 
-const ordinatesPerRegion = { ranking: 4, fine: 16 } as const; // directions each side of the critical angle
+const ordinatesPerRegion = { ranking: 5, fine: 16 } as const; // directions each side of the critical angle
 
 /** Solves light transport: broad beam by discrete ordinates, finite spots by their ratio to it.
  *  Throws: out-of-range for a faulty layer. */
 export function solveLight(layers: readonly OpticalLayer[], options: LightOptions): LightSolution {
   checkLayers(layers);
   const broad = solveBroadBeam(layers, ordinatesPerRegion[options.accuracy]);
-  let spread: ReturnType<typeof solveSpotSpread> | undefined;
+  let spread: SpotSpread | undefined;
   const tops: number[] = [0];
   for (const layer of layers) tops.push(tops[tops.length - 1]! + layer.thicknessUm);
   const bottom = tops[layers.length]!;
 
-  const place = (depthsUm: ArrayLike<number>): { where: Int32Array; below: Float64Array } => {
+  const place = (depthsUm: ArrayLike<number>): SpreadPoints => {
     const where = new Int32Array(depthsUm.length);
     const below = new Float64Array(depthsUm.length);
     for (let i = 0; i < depthsUm.length; i++) {
@@ -50,43 +50,46 @@ export function solveLight(layers: readonly OpticalLayer[], options: LightOption
       where[i] = j;
       below[i] = depth - tops[j]!;
     }
-    return { where, below };
+    return { layers: where, belowTopsUm: below };
   };
-  const ratiosAt = (spot: BeamProfile, where: Int32Array, below: Float64Array): Float64Array => {
+  const spreadBy = (spot: BeamProfile | null, points: SpreadPoints, broadValues: Float64Array): Float64Array => {
+    if (spot === null) return broadValues.slice();
     spread ??= solveSpotSpread(layers);
-    return spread.ratios(spot, where, below);
+    return spread.ratios(spot, points).map((ratio, i) => ratio * broadValues[i]!);
   };
+
+  const depthQuestion = remembered((depthsUm) => {
+    const points = place(depthsUm);
+    return { points, values: Float64Array.from(points.layers, (j, i) => broad.fluence(j, points.belowTopsUm[i]!)) };
+  });
   const fluenceRatios = (spot: BeamProfile | null, depthsUm: ArrayLike<number>): Float64Array => {
-    const { where, below } = place(depthsUm);
-    const fluences = Float64Array.from(where, (j, i) => broad.fluence(j, below[i]!));
-    if (spot) {
-      const ratios = ratiosAt(spot, where, below);
-      for (let i = 0; i < fluences.length; i++) fluences[i]! *= ratios[i]!;
-    }
-    return fluences;
+    const { points, values } = depthQuestion(depthsUm);
+    return spreadBy(spot, points, values);
   };
-  const absorbedPerCm = (spot: BeamProfile | null, facesUm: ArrayLike<number>): Float64Array => {
-    const { where, below } = place(facesUm);
+
+  const cellQuestion = remembered((facesUm) => {
+    const faces = place(facesUm);
     const cells = Math.max(0, facesUm.length - 1);
     const means = new Float64Array(cells);
     const middles = new Float64Array(cells);
-    let flux = broad.flux(where[0] ?? 0, below[0] ?? 0);
-    for (let i = 0; i < cells; i++) {
-      const width = facesUm[i + 1]! - facesUm[i]!;
-      if (!(width > 0))
-        throw new DomainError('out-of-range', 'cell faces must ascend', { quantity: 'facesUm', value: facesUm[i + 1]! });
-      const next = broad.flux(where[i + 1]!, below[i + 1]!);
-      means[i] = Math.max(0, (flux - next) / (width * 1e-4));
-      middles[i] = facesUm[i]! + width / 2;
-      flux = next;
+    for (let i = 0, above = 0; i <= cells && facesUm.length > 0; i++) {
+      const flux = broad.flux(faces.layers[i]!, faces.belowTopsUm[i]!);
+      if (i > 0) {
+        const width = facesUm[i]! - facesUm[i - 1]!;
+        if (!(width > 0))
+          throw new DomainError('out-of-range', 'cell faces must ascend', { quantity: 'facesUm', value: facesUm[i]! });
+        means[i - 1] = Math.max(0, (above - flux) / (width * 1e-4));
+        middles[i - 1] = facesUm[i - 1]! + width / 2;
+      }
+      above = flux;
     }
-    if (spot) {
-      const middle = place(middles);
-      const ratios = ratiosAt(spot, middle.where, middle.below);
-      for (let i = 0; i < cells; i++) means[i]! *= ratios[i]!;
-    }
-    return means;
+    return { points: place(middles), values: means };
+  });
+  const absorbedPerCm = (spot: BeamProfile | null, facesUm: ArrayLike<number>): Float64Array => {
+    const { points, values } = cellQuestion(facesUm);
+    return spreadBy(spot, points, values);
   };
+
   const penetrationDepthMm = (spot: BeamProfile | null): number | null => {
     const depths: number[] = [];
     for (let depth = 0; depth < bottom; depth = depth * 1.03 + 1) depths.push(depth);
@@ -113,6 +116,21 @@ export function solveLight(layers: readonly OpticalLayer[], options: LightOption
     fluenceRatios,
     absorbedPerCm,
     penetrationDepthMm,
+  };
+}
+
+/** Keeps the last answer, so that every spot asked for at the same depths shares the work on them. */
+function remembered<T>(answer: (depthsUm: ArrayLike<number>) => T): (depthsUm: ArrayLike<number>) => T {
+  let asked = new Float64Array(0);
+  let kept: T | undefined;
+  return (depthsUm) => {
+    let same = kept !== undefined && asked.length === depthsUm.length;
+    for (let i = 0; same && i < asked.length; i++) same = asked[i] === depthsUm[i];
+    if (!same) {
+      kept = answer(depthsUm);
+      asked = Float64Array.from(depthsUm);
+    }
+    return kept as T;
   };
 }
 
