@@ -1,0 +1,83 @@
+import { figureCount, planRun, type RunQuestion, worstRelativeError } from '../../domain/transport/monte-carlo.js';
+import { addChunk, emptyTally, type Tally } from '../../domain/transport/tally.js';
+import type { PhotonPool } from './pool.js';
+
+export interface RunOrder {
+  readonly question: RunQuestion;
+  readonly seed: number;
+  readonly photonsPerChunk: number;
+  readonly chunkLimit: number;
+  /** Relative standard error at which every fluence ratio is good enough; null runs to the limit. */
+  readonly standardErrorTarget: number | null;
+  readonly maxSeconds: number;
+}
+
+export type StopReason = 'photons' | 'standard-error' | 'time';
+
+export interface RunState {
+  readonly tally: Tally;
+  readonly elapsedS: number;
+}
+
+const leastChunks = 32; // below, the standard error itself is known to worse than 13 %
+
+/** Walks chunks on the pool and adds them by number, so that the sum does not depend on the number of threads.
+ *  Goes on from `start`; `onChunk` sees each state in order. Rejects when aborted, leaving the last state seen valid. */
+export async function pursueRun(
+  order: RunOrder,
+  start: RunState | null,
+  pool: PhotonPool,
+  signal: AbortSignal,
+  onChunk: (state: RunState) => void,
+): Promise<{ state: RunState; stoppedBy: StopReason }> {
+  const plan = planRun(order.question);
+  const runKey = JSON.stringify(order.question);
+  const before = start?.elapsedS ?? 0;
+  const startedMs = performance.now();
+  let state: RunState = start ?? { tally: emptyTally(figureCount(plan)), elapsedS: 0 };
+  const ahead = new AbortController();
+  const either = AbortSignal.any([signal, ahead.signal]);
+  const waiting = new Map<number, Promise<Float64Array>>();
+  let next = state.tally.chunks;
+  const launch = () => {
+    const { seed, photonsPerChunk: photons } = order;
+    const walk = pool.walkChunk({ runKey, question: order.question, seed, chunk: next, photons }, either);
+    walk.catch(() => {});
+    waiting.set(next++, walk);
+  };
+  const stoppedBy = (): StopReason | null => {
+    const { chunks } = state.tally;
+    if (chunks >= order.chunkLimit) return 'photons';
+    if (chunks < leastChunks) return null;
+    if (order.standardErrorTarget !== null && worstRelativeError(plan, state.tally) <= order.standardErrorTarget) {
+      return 'standard-error';
+    }
+    return state.elapsedS >= order.maxSeconds ? 'time' : null;
+  };
+  try {
+    for (;;) {
+      signal.throwIfAborted();
+      const reason = stoppedBy();
+      if (reason) return { state, stoppedBy: reason };
+      while (waiting.size < 2 * pool.threads && next < order.chunkLimit) launch();
+      const { chunks } = state.tally;
+      const figures = await waiting.get(chunks)!;
+      waiting.delete(chunks);
+      state = { tally: addChunk(state.tally, figures), elapsedS: before + (performance.now() - startedMs) / 1000 };
+      onChunk(state);
+    }
+  } finally {
+    ahead.abort();
+  }
+}
+
+/** How near a run is to its stop, 0 to 1, by whichever rule will end it first. */
+export function progressFraction(order: RunOrder, state: RunState): number {
+  const { tally, elapsedS } = state;
+  const parts = [tally.chunks / order.chunkLimit, elapsedS / order.maxSeconds];
+  if (order.standardErrorTarget !== null && tally.chunks >= 2) {
+    const worst = worstRelativeError(planRun(order.question), tally);
+    parts.push((order.standardErrorTarget / worst) ** 2);
+  }
+  return Math.min(1, Math.max(...parts));
+}
