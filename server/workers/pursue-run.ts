@@ -1,3 +1,4 @@
+import { setMaxListeners } from 'node:events';
 import { figureCount, planRun, type RunQuestion, worstRelativeError } from '../../domain/transport/monte-carlo.js';
 import { addChunk, emptyTally, type Tally } from '../../domain/transport/tally.js';
 import type { PhotonPool } from './pool.js';
@@ -37,6 +38,7 @@ export async function pursueRun(
   let state: RunState = start ?? { tally: emptyTally(figureCount(plan)), elapsedS: 0 };
   const ahead = new AbortController();
   const either = AbortSignal.any([signal, ahead.signal]);
+  setMaxListeners(0, either);
   const waiting = new Map<number, Promise<Float64Array>>();
   let next = state.tally.chunks;
   const launch = () => {

@@ -68,6 +68,8 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
   uint32_t random[4];
   memcpy(random, seed, sizeof random);
   const double widest = plan->ring_radius[RINGS - 1];
+  int loaded = -1;
+  double absorbed_here = 0, top = 0, bottom = 0, free_path = 0, share = 0, g = 0, over = 0, under = 0, slope = 0, sum = 0, scale = 0;
   for (long photon = 0; photon < photons; photon++) {
     double x = 0, y = 0, z = 0, ux = 0, uy = 0, uz = 1, weight = 1 - plan->specular;
     int layer = 0, steps = 0;
@@ -87,15 +89,30 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
         if (heights[strip] + second * (heights[strip + 1] - heights[strip]) < exp(-depth)) break;
       }
       for (;;) {
-        double length = depth / plan->interaction[layer], after = z + uz * length;
-        int leaves = after >= plan->bottoms[layer] || after < plan->tops[layer];
+        if (layer != loaded) {
+          if (loaded >= 0) tally->absorbed[loaded] += absorbed_here;
+          absorbed_here = 0;
+          loaded = layer;
+          top = plan->tops[layer];
+          bottom = plan->bottoms[layer];
+          free_path = 1 / plan->interaction[layer];
+          share = plan->absorbed_share[layer];
+          g = plan->anisotropy[layer];
+          over = 1 - g * g;
+          under = 1 - g;
+          slope = 2 * g;
+          sum = 1 + g * g;
+          scale = 0.5 / g;
+        }
+        double length = depth * free_path, after = z + uz * length;
+        int down = uz > 0, leaves = down ? after >= bottom : after < top;
         if (leaves) {
-          after = uz > 0 ? plan->bottoms[layer] : plan->tops[layer];
+          after = down ? bottom : top;
           length = (after - z) / uz;
         }
-        double upper = uz > 0 ? z : after;
+        double upper = down ? z : after;
         if (upper < plan->deepest) {
-          double lower = uz > 0 ? after : z;
+          double lower = down ? after : z;
           for (int bin = plan->first_bin[(int)(upper * plan->depth_cells_per_cm)]; plan->bin_upper[bin] < lower; bin++) {
             double from = upper > plan->bin_upper[bin] ? upper : plan->bin_upper[bin];
             double overlap = (lower < plan->bin_lower[bin] ? lower : plan->bin_lower[bin]) - from;
@@ -119,8 +136,8 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
           tally->abandoned += weight;
           goto done;
         }
-        depth -= length * plan->interaction[layer];
-        int down = uz > 0, next = down ? layer + 1 : layer - 1;
+        depth = fmax(0, depth - length / free_path);
+        int next = down ? layer + 1 : layer - 1;
         double from_index = plan->index[layer + 1], to_index = plan->index[next + 1];
         if (from_index != to_index) {
           if (next_word(random) * unit + 0.5 < fresnel(from_index, to_index, down ? uz : -uz)) {
@@ -144,8 +161,8 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
         }
         layer = next;
       }
-      double absorbed = weight * plan->absorbed_share[layer];
-      tally->absorbed[layer] += absorbed;
+      double absorbed = weight * share;
+      absorbed_here += absorbed;
       weight -= absorbed;
       if (weight < 1e-3) {
         if (!(weight > 0)) break;
@@ -160,11 +177,11 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
         tally->abandoned += weight;
         break;
       }
-      double g = plan->anisotropy[layer], cosine, draw = next_word(random) * unit + 0.5 + unit / 2;
+      double cosine, draw = next_word(random) * unit + 0.5 + unit / 2;
       if (g == 0) cosine = 2 * draw - 1;
       else {
-        double term = (1 - g * g) / (1 - g + 2 * g * draw);
-        cosine = (1 + g * g - term * term) / (2 * g);
+        double term = over / (under + slope * draw);
+        cosine = (sum - term * term) * scale;
       }
       double a, b, square;
       do {
@@ -185,6 +202,7 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
     }
   done:;
   }
+  if (loaded >= 0) tally->absorbed[loaded] += absorbed_here;
 }
 
 int main(int argc, char **argv) {
