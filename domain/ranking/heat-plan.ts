@@ -42,6 +42,7 @@ export function planHeat(model: ExposureModel, pulse: Pulse, train?: Train): Hea
         emission,
         timesS,
         placesRadiusUm: [0, inclusion.effectRadiusUm],
+        modes,
       }).excessK
     : null;
   const count = timesS.length;
@@ -53,6 +54,7 @@ export function planHeat(model: ExposureModel, pulse: Pulse, train?: Train): Hea
     emission,
     timesS,
     placesRadiusUm: [0],
+    modes,
   }).excessK;
   return {
     timesS,
