@@ -1,7 +1,7 @@
 import type { Spot } from '../beam/spot.js';
 import { absorptionOf } from '../spectra/chromophore.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
-import { skinLayers } from '../tissue/skin.js';
+import { skinLayers } from '../tissue/skin-layers.js';
 import { type LightSolution, solveLight } from '../transport/layered-solver.js';
 import type { ExposureModel } from './exposure-model.js';
 
@@ -36,16 +36,24 @@ function absorptionAtDepth(layers: readonly OpticalLayer[], depthUm: number): nu
   return layers[layers.length - 1]!.absorptionPerCm;
 }
 
+/** The stack with its last layer at least as deep as the heat grid. */
+function downTo(bottomUm: number, layers: readonly OpticalLayer[]): OpticalLayer[] {
+  const last = layers[layers.length - 1]!;
+  const aboveUm = layers.slice(0, -1).reduce((sum, layer) => sum + layer.thicknessUm, 0);
+  return [...layers.slice(0, -1), { ...last, thicknessUm: Math.max(last.thicknessUm, bottomUm - aboveUm) }];
+}
+
 /** Solves the light of one wavelength. Throws: out-of-range where a chromophore's table ends. */
 export function planLight(model: ExposureModel, wavelengthNm: number): LightPlan {
   const { skin, target, reference, remarks, grid } = model;
-  const layers = skinLayers(skin, wavelengthNm, reference, remarks);
+  const bottomUm = grid.facesUm[grid.facesUm.length - 1]!;
+  const layers = downTo(bottomUm, skinLayers(skin, wavelengthNm, reference, remarks));
   const light: LightSolution = solveLight(layers, { accuracy: 'ranking' });
   const lesionFraction = target.lesionMelanosomeFraction;
   const lesionLayers =
     lesionFraction === undefined || lesionFraction === skin.melanosomeFraction
       ? layers
-      : skinLayers({ ...skin, melanosomeFraction: lesionFraction }, wavelengthNm, reference, remarks);
+      : downTo(bottomUm, skinLayers({ ...skin, melanosomeFraction: lesionFraction }, wavelengthNm, reference, remarks));
   const lesionLight = lesionLayers === layers ? light : solveLight(lesionLayers, { accuracy: 'ranking' });
   const heaterPerCm = target.heaterAbsorptionPerCm(wavelengthNm);
   const melanosomePerCm =
@@ -71,5 +79,5 @@ export function planLight(model: ExposureModel, wavelengthNm: number): LightPlan
 }
 
 function melanosomeAbsorption({ reference, remarks }: ExposureModel, wavelengthNm: number): number {
-  return absorptionOf(reference, 'melanosome', wavelengthNm, remarks);
+  return absorptionOf(reference.chromophores, 'melanosome', wavelengthNm, remarks);
 }

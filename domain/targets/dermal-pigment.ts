@@ -1,4 +1,4 @@
-import { absorptionOf } from '../spectra/chromophore.js';
+import { absorptionOf, chromophoreOf } from '../spectra/chromophore.js';
 import { relaxationTimeS } from '../thermal/relaxation.js';
 import { explosiveVaporizationC } from './granule.js';
 import { assertTargetRange, defineTarget, materialOf } from './target.js';
@@ -19,7 +19,7 @@ export const dermalPigment = defineTarget({
     assertTargetRange(dermalPigment, target.granuleDiameterUm, target.depthMm);
     const { reference, remarks } = context;
     const radiusUm = target.granuleDiameterUm / 2;
-    absorptionOf(reference, target.chromophoreId, 700, remarks, 'id-only');
+    chromophoreOf(reference.chromophores, target.chromophoreId);
     remarks.assume({
       name: 'explosiveVaporizationC',
       value: explosiveVaporizationC,
@@ -48,7 +48,7 @@ export const dermalPigment = defineTarget({
       },
       effect: { by: 'vaporization', temperatureC: explosiveVaporizationC },
       melanosomesAreTarget: false,
-      heaterAbsorptionPerCm: (wavelengthNm) => absorptionOf(reference, target.chromophoreId, wavelengthNm, remarks),
+      heaterAbsorptionPerCm: (wavelengthNm) => absorptionOf(reference.chromophores, target.chromophoreId, wavelengthNm, remarks),
     };
   },
 });

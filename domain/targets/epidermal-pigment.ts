@@ -54,7 +54,7 @@ export const epidermalPigment = defineTarget({
       },
       melanosomesAreTarget: true,
       ...(target.melanosomeFraction === undefined ? {} : { lesionMelanosomeFraction: target.melanosomeFraction }),
-      heaterAbsorptionPerCm: (wavelengthNm) => absorptionOf(reference, 'melanosome', wavelengthNm, remarks),
+      heaterAbsorptionPerCm: (wavelengthNm) => absorptionOf(reference.chromophores, 'melanosome', wavelengthNm, remarks),
     };
   },
 });

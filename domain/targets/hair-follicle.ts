@@ -47,7 +47,7 @@ export const hairFollicle = defineTarget({
       effect: { by: 'damage', pair: damagePairOf(context, 'hair-follicle', 'target') },
       melanosomesAreTarget: false,
       heaterAbsorptionPerCm(wavelengthNm) {
-        const shaftPerCm = melaninFraction * absorptionOf(reference, 'melanosome', wavelengthNm, remarks);
+        const shaftPerCm = melaninFraction * absorptionOf(reference.chromophores, 'melanosome', wavelengthNm, remarks);
         return shaftPerCm * flatteningFactor(shaftPerCm, shaftRadiusUm);
       },
       ...(melaninFraction > 0 ? {} : { noTarget: 'the shaft holds no melanin, so nothing in the follicle absorbs' }),

@@ -40,8 +40,8 @@ export const sebaceousGland = defineTarget({
       effect: { by: 'damage', pair: damagePairOf(context, 'hair-follicle', 'target') },
       melanosomesAreTarget: false,
       heaterAbsorptionPerCm: (wavelengthNm) =>
-        sebumFraction * absorptionOf(reference, 'lipid', wavelengthNm, remarks) +
-        (1 - sebumFraction) * absorptionOf(reference, 'water', wavelengthNm, remarks),
+        sebumFraction * absorptionOf(reference.chromophores, 'lipid', wavelengthNm, remarks) +
+        (1 - sebumFraction) * absorptionOf(reference.chromophores, 'water', wavelengthNm, remarks),
     };
   },
 });

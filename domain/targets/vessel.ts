@@ -1,5 +1,5 @@
-import { bloodAbsorptionPerCm } from '../spectra/blood.js';
 import { relaxationTimeS } from '../thermal/relaxation.js';
+import { skinBloodAbsorptionPerCm } from '../tissue/skin-layers.js';
 import { flatteningFactor } from '../tissue/vessel-correction.js';
 import { assertTargetRange, damagePairOf, defineTarget, materialOf } from './target.js';
 
@@ -35,7 +35,7 @@ export const vessel = defineTarget({
       effect: { by: 'damage', pair: damagePairOf(context, 'vessel-wall', 'target') },
       melanosomesAreTarget: false,
       heaterAbsorptionPerCm(wavelengthNm) {
-        const bloodPerCm = bloodAbsorptionPerCm(wavelengthNm, skin, reference, remarks);
+        const bloodPerCm = skinBloodAbsorptionPerCm(wavelengthNm, skin, reference, remarks);
         return bloodPerCm * flatteningFactor(bloodPerCm, radiusUm);
       },
     };

@@ -1,4 +1,3 @@
-import { fileURLToPath } from 'node:url';
 import type { Pulse } from '../../domain/beam/pulse.js';
 import type { Spot } from '../../domain/beam/spot.js';
 import { Remarks } from '../../domain/quantities/caution.js';
@@ -14,8 +13,7 @@ import type { Target } from '../../domain/targets/target.js';
 import type { Cooling } from '../../domain/thermal/surface-cooling.js';
 import { resolveSkin, type SkinDescription } from '../../domain/tissue/skin.js';
 import { loadReferenceData } from '../../server/reference/load.js';
-
-export const dataFolder = fileURLToPath(new URL('../../data', import.meta.url));
+import { dataFolder } from './data-folder.js';
 
 let loaded: ReferenceData | undefined;
 

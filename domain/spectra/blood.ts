@@ -1,0 +1,79 @@
+import { interpolateLog } from '../numeric/interpolate.js';
+import type { Remarks } from '../quantities/caution.js';
+import { absorptionPerCm, type Chromophores, chromophoreOf } from './chromophore.js';
+
+/** Amounts that set the absorption of blood. */
+export interface BloodContents {
+  readonly oxygenSaturationFraction: number;
+  /** Hemoglobin per volume of blood. */
+  readonly hemoglobinGPerL: number;
+}
+
+/** Published rows of whole blood at hematocrit 45 %, water included. @source Bosschaart2014 appendix */
+export interface WholeBloodTable {
+  readonly wavelengthsNm: Float64Array;
+  readonly oxygenatedPerCm: Float64Array;
+  readonly deoxygenatedPerCm: Float64Array;
+}
+
+/** The two hemoglobins by which blood is computed; a second table may be put in their place. */
+export interface HemoglobinTable {
+  readonly oxygenatedId: string;
+  readonly deoxygenatedId: string;
+}
+
+const lastTableNm = 990; // hemoglobin tables end at 1000 nm; the whole-blood rows take over just before
+const bridgeFromNm = 995;
+const bridgeToNm = 1070;
+const referenceHemoglobinGPerL = 150; // hemoglobin at which the whole-blood rows hold: hematocrit 45 %
+const hemoglobinEndsNm = 1150; // between 'about 1100' of Friebel2009 and where the bridge's slope would end
+const waterOfBlood = 0.75; // Friebel2009: beyond 1100 nm blood absorbs as water lowered by 20 to 30 %
+
+/** Absorption of blood, 1/cm, before any flattening by red cells or vessels.
+ *  To 990 nm: hemoglobin by saturation, plus the water of blood. 995 to 1070 nm: the two published whole-blood rows, between them in
+ *  the logarithm. Beyond: water lowered by a quarter, and what hemoglobin adds falls evenly to nothing at 1150 nm. Valid: from the start of the hemoglobin tables to the end of the water table.
+ *  Throws: out-of-range. @source Prahl1998; Bosschaart2014 appendix; Friebel2009 abstract */
+export function bloodAbsorptionPerCm(
+  wavelengthNm: number,
+  contents: BloodContents,
+  chromophores: Chromophores,
+  wholeBlood: WholeBloodTable,
+  hemoglobin: HemoglobinTable,
+  remarks?: Remarks,
+): number {
+  const saturation = contents.oxygenSaturationFraction;
+  const amount = contents.hemoglobinGPerL / referenceHemoglobinGPerL;
+  const waterPerCm = absorptionPerCm(chromophoreOf(chromophores, 'water'), wavelengthNm);
+  if (wavelengthNm <= lastTableNm) {
+    const oxygenated = absorptionPerCm(
+      chromophoreOf(chromophores, hemoglobin.oxygenatedId),
+      wavelengthNm,
+      contents.hemoglobinGPerL,
+    );
+    const deoxygenated = absorptionPerCm(
+      chromophoreOf(chromophores, hemoglobin.deoxygenatedId),
+      wavelengthNm,
+      contents.hemoglobinGPerL,
+    );
+    return saturation * oxygenated + (1 - saturation) * deoxygenated + waterOfBlood * waterPerCm;
+  }
+  remarks?.caution(
+    'blood-beyond-tables',
+    'Beyond 1000 nm no hemoglobin table exists: blood rests on two published whole-blood rows (995 and 1070 nm) and, beyond, on water lowered by 20 to 30 %.',
+  );
+  remarks?.assume({
+    name: 'bloodBeyond1000Nm',
+    value: 'whole-blood rows, then water lowered by a quarter',
+    source: 'Bosschaart2014 Friebel2009',
+    status: 'read-secondary',
+  });
+  const bridge = (values: Float64Array, nm: number) =>
+    interpolateLog(wholeBlood.wavelengthsNm, values, nm, 'wavelengthNm for whole blood');
+  const rowAt = (nm: number) =>
+    saturation * bridge(wholeBlood.oxygenatedPerCm, nm) + (1 - saturation) * bridge(wholeBlood.deoxygenatedPerCm, nm);
+  if (wavelengthNm <= bridgeToNm) return amount * rowAt(Math.max(wavelengthNm, bridgeFromNm));
+  const endPerCm = rowAt(bridgeToNm);
+  const share = Math.max(0, (hemoglobinEndsNm - wavelengthNm) / (hemoglobinEndsNm - bridgeToNm));
+  const hemoglobinRest = share * amount * Math.max(0, endPerCm - waterOfBlood * waterPerCm);
+  return hemoglobinRest + waterOfBlood * waterPerCm;
+}
