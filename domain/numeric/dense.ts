@@ -83,6 +83,8 @@ function tridiagonalize(a: Float64Array, n: number, d: Float64Array, e: Float64A
   }
 }
 
+const smallest = 1e-150; // squares of less vanish
+
 function diagonalize(z: Float64Array, n: number, d: Float64Array, e: Float64Array): void {
   for (let i = 1; i < n; i++) e[i - 1] = e[i]!;
   e[n - 1] = 0;
@@ -91,7 +93,7 @@ function diagonalize(z: Float64Array, n: number, d: Float64Array, e: Float64Arra
       let m = l;
       for (; m < n - 1; m++) {
         const size = Math.abs(d[m]!) + Math.abs(d[m + 1]!);
-        if (Math.abs(e[m]!) <= Number.EPSILON * size) break;
+        if (Math.abs(e[m]!) <= Number.EPSILON * size + smallest) break;
       }
       if (m === l) break;
       if (iteration === 60) {

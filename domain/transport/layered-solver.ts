@@ -29,6 +29,8 @@ export interface LightSolution {
 
 const ordinatesPerRegion = { ranking: 5, fine: 16 } as const; // directions each side of the critical angle
 
+const rounding = 1e-12; // a depth summed in another order than the layers may pass the bottom by this much
+
 /** Solves light transport: broad beam by discrete ordinates, finite spots by their ratio to it.
  *  Throws: out-of-range for a faulty layer. */
 export function solveLight(layers: readonly OpticalLayer[], options: LightOptions): LightSolution {
@@ -43,8 +45,9 @@ export function solveLight(layers: readonly OpticalLayer[], options: LightOption
     const where = new Int32Array(depthsUm.length);
     const below = new Float64Array(depthsUm.length);
     for (let i = 0; i < depthsUm.length; i++) {
-      const depth = depthsUm[i]!;
-      assertWithin('depth in um', depth, 0, bottom);
+      const asked = depthsUm[i]!;
+      assertWithin('depth in um', asked, 0, bottom * (1 + rounding));
+      const depth = Math.min(asked, bottom);
       let j = 0;
       while (j + 1 < layers.length && depth >= tops[j + 1]!) j++;
       where[i] = j;
