@@ -8,6 +8,8 @@ export interface ChainModes {
   readonly size: number;
   readonly ratesPerS: Float64Array;
   readonly modeOfCell: Float64Array;
+  /** The same, [cell * size + mode]. */
+  readonly cellOfMode: Float64Array;
 }
 
 /** Modes of cells in a row, given their capacities, the conductances between neighbors and the one from the first cell outward.
@@ -19,7 +21,8 @@ export function chainModes(capacity: Float64Array, conductance: Float64Array, ex
   const { values, vectors } = symmetricTridiagonalEigen(diagonal, offDiagonal);
   const rootCapacity = capacity.map(Math.sqrt);
   const modeOfCell = vectors.map((component, index) => component / rootCapacity[index % size]!);
-  return { size, ratesPerS: values.map((value) => Math.max(value, 0)), modeOfCell };
+  const cellOfMode = modeOfCell.map((_, index) => modeOfCell[(index % size) * size + Math.floor(index / size)]!);
+  return { size, ratesPerS: values.map((value) => Math.max(value, 0)), modeOfCell, cellOfMode };
 }
 
 /** Modes already worked out, to be shared between requests: layered ones by grid and heat transfer coefficient, others by a key. */
@@ -37,7 +40,7 @@ export class HeatModes {
     );
   }
 
-  /** Matrix [later * size + earlier] that rewrites amplitudes of one set of modes as amplitudes of another on the same grid. */
+  /** Matrix [earlier * size + later] that rewrites amplitudes of one set of modes as amplitudes of another on the same grid. */
   transfer(grid: HeatGrid, earlier: ChainModes, later: ChainModes): Float64Array {
     const known = this.#transfers.get(earlier) ?? new WeakMap<ChainModes, Float64Array>();
     this.#transfers.set(earlier, known);
@@ -65,13 +68,10 @@ function remember<Value>(known: Map<string, Value>, key: string, make: () => Val
 function transferMatrix(capacity: Float64Array, earlier: ChainModes, later: ChainModes): Float64Array {
   const { size } = earlier;
   const matrix = new Float64Array(size * size);
-  const weighted = new Float64Array(size);
-  for (let to = 0; to < size; to++) {
-    for (let cell = 0; cell < size; cell++) weighted[cell] = later.modeOfCell[to * size + cell]! * capacity[cell]!;
-    for (let from = 0; from < size; from++) {
-      let sum = 0;
-      for (let cell = 0; cell < size; cell++) sum += weighted[cell]! * earlier.modeOfCell[from * size + cell]!;
-      matrix[to * size + from] = sum;
+  for (let from = 0; from < size; from++) {
+    for (let cell = 0; cell < size; cell++) {
+      const weighted = earlier.modeOfCell[from * size + cell]! * capacity[cell]!;
+      for (let to = 0; to < size; to++) matrix[from * size + to]! += weighted * later.cellOfMode[cell * size + to]!;
     }
   }
   return matrix;
