@@ -31,12 +31,16 @@ export function cooledBaseline(
     const previous = phases[index - 1];
     if (previous && previous.modes !== phase.modes) start = product(known.transfer(grid, previous.modes, phase.modes), start);
     const forcing = surfaceExchange(grid, phase.heatTransferWPerM2K) * (phase.temperatureC - restC[0]!) + lossWPerM2;
-    const stateAt = (elapsedS: number): Float64Array =>
-      start.map((amplitude, mode) => {
-        const lost = -Math.expm1(-ratesPerS[mode]! * elapsedS);
-        const gained = ratesPerS[mode]! > 0 ? lost / ratesPerS[mode]! : elapsedS;
-        return amplitude * (1 - lost) + forcing * modeOfCell[mode * size]! * gained;
-      });
+    const stateAt = (elapsedS: number): Float64Array => {
+      const state = new Float64Array(size);
+      for (let mode = 0; mode < size; mode++) {
+        const rate = ratesPerS[mode]!;
+        const lost = -Math.expm1(-rate * elapsedS);
+        const gained = rate > 0 ? lost / rate : elapsedS;
+        state[mode] = start[mode]! * (1 - lost) + forcing * modeOfCell[mode * size]! * gained;
+      }
+      return state;
+    };
     const surfaceC = (state: Float64Array): number => {
       let cellC = restC[0]!;
       for (let mode = 0; mode < size; mode++) cellC += modeOfCell[mode * size]! * state[mode]!;

@@ -44,9 +44,8 @@ export function sensitivityBlocks(
         excitation.advanceTo(timeS);
         return excitation.amplitudes;
       });
-      const remaining = interleaved(sampleS, phase.modes.size, (timeS) =>
-        phase.modes.ratesPerS.map((rate) => Math.exp(-rate * (timeS - phase.fromS))),
-      );
+      const remaining =
+        index > 0 ? interleaved(sampleS, phase.modes.size, (timeS) => decays(phase, timeS - phase.fromS)) : amplitudes;
       const reachUm = 1e4 * Math.sqrt(grid.diffusivityMaxMm2PerS * (sampleS[times - 1]! - beginS));
       placesUm.forEach((placeUm, place) => {
         const [firstCell, endCell] = cellsWithin(grid, placeUm - reachUm, placeUm + reachUm);
@@ -59,11 +58,7 @@ export function sensitivityBlocks(
           adjoint = carriedBack(adjoint, lit[earlier + 1]!.modes, before.modes, grid, known);
           const left = atEnd[earlier];
           if (left) addModes(perCell, timesModes(adjoint, left), before.modes, firstCell, endCell);
-          if (earlier > 0)
-            adjoint = timesModes(
-              adjoint,
-              before.modes.ratesPerS.map((rate) => Math.exp(-rate * (before.toS - before.fromS))),
-            );
+          if (earlier > 0) adjoint = timesModes(adjoint, decays(before, before.toS - before.fromS));
         }
         for (let i = 0; i < perCell.length; i++) {
           const cell = firstCell + (i >> 2);
@@ -94,8 +89,20 @@ function interleaved(timesS: Float64Array, size: number, valuesAt: (timeS: numbe
   return result;
 }
 
+function decays({ modes }: PhaseModes, durationS: number): Float64Array {
+  const result = new Float64Array(modes.size);
+  // Rates ascend: once a mode is gone, so are all that follow.
+  for (let mode = 0, left = 1; mode < modes.size && left > 0; mode++) {
+    left = Math.exp(-modes.ratesPerS[mode]! * durationS);
+    result[mode] = left;
+  }
+  return result;
+}
+
 function timesModes(four: Float64Array, perMode: Float64Array): Float64Array {
-  return four.map((value, i) => value * perMode[i >> 2]!);
+  const result = new Float64Array(four.length);
+  for (let i = 0; i < four.length; i++) result[i] = four[i]! * perMode[i >> 2]!;
+  return result;
 }
 
 // Ten times the root of diffusivity x time: what lies beyond weighs less than exp(-25).
@@ -144,9 +151,8 @@ function addModes(perCell: Float64Array, weights: Float64Array, modes: ChainMode
 // Modes ascend in rate, so those that have died out stand at the end.
 function liveModes(four: Float64Array, size: number): number {
   let greatest = 0;
-  for (const value of four) if (Math.abs(value) > greatest) greatest = Math.abs(value);
-  let live = size;
-  const isDead = (mode: number) => [0, 1, 2, 3].every((i) => Math.abs(four[blockTimes * mode + i]!) < 1e-16 * greatest);
-  while (live > 1 && isDead(live - 1)) live--;
-  return live;
+  for (let i = 0; i < four.length; i++) greatest = Math.max(greatest, Math.abs(four[i]!));
+  let last = four.length - 1;
+  while (last > 0 && Math.abs(four[last]!) < 1e-16 * greatest) last--;
+  return Math.min(size, (last >> 2) + 1);
 }
