@@ -18,6 +18,10 @@ export interface ScaledLayer {
   readonly absorption: number;
   readonly scattering: number;
   readonly extinction: number;
+  /** Scattering within the forward peak, its share g^4 of all scattering, and -ln g; no peak is followed for g under 0.1. */
+  readonly peakScattering: number;
+  readonly peak: number;
+  readonly peakRate: number;
   /** Moments of the scaled phase function, degree 0 to 3. */
   readonly moments: Float64Array;
 }
@@ -33,6 +37,9 @@ export function scaleLayer(layer: OpticalLayer): ScaledLayer {
     absorption: layer.absorptionPerCm,
     scattering,
     extinction: layer.absorptionPerCm + scattering,
+    peakScattering: g > 0.1 ? layer.scatteringPerCm * forward : 0,
+    peak: forward,
+    peakRate: -Math.log(Math.max(g, 0.1)),
     moments: Float64Array.from({ length: degree + 1 }, (_, l) => (g ** l - forward) / (1 - forward)),
   };
 }
