@@ -19,7 +19,7 @@ export function bandedPosition(matrix: BandedMatrix, row: number, column: number
 }
 
 /** Solves matrix x = right by Gaussian elimination with row pivoting; `matrix` is spent and `right` becomes x.
- *  Throws: no-solution when a pivot vanishes. @source GolubVanLoan2013 section 4.3.5 */
+ *  Throws: no-solution when a pivot vanishes. @source GolubVanLoan2013 section 4.3 */
 export function solveBanded(matrix: BandedMatrix, right: Float64Array): Float64Array {
   const { size, below, above, values } = matrix;
   const width = 2 * below + above + 1;

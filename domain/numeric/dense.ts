@@ -2,7 +2,7 @@ import { DomainError } from '../quantities/errors.js';
 
 /** Lower Cholesky factor G of a symmetric positive definite matrix, P = G G^T, written over its lower triangle.
  *  Shape: row-major, size x size; the upper triangle is set to zero. Throws: no-solution when not positive definite.
- *  @source GolubVanLoan2013 algorithm 4.2.1 */
+ *  @source GolubVanLoan2013 section 4.2 */
 export function choleskyInPlace(matrix: Float64Array, size: number): void {
   for (let i = 0; i < size; i++) {
     for (let j = 0; j <= i; j++) {
@@ -22,7 +22,7 @@ export function choleskyInPlace(matrix: Float64Array, size: number): void {
 /** Eigenvalues and orthonormal eigenvectors of a small symmetric matrix.
  *  Shape: row-major; on return `matrix` holds eigenvectors in its columns, `eigenvalues` their values, unsorted.
  *  Householder reduction to tridiagonal form, then implicit QL. Throws: not-converged.
- *  @source GolubVanLoan2013 algorithms 8.3.1 and 8.3.3; MartinReinschWilkinson1968 procedures tred2 and imtql2 */
+ *  @source GolubVanLoan2013 section 8.3; MartinReinschWilkinson1968 (tred2); MartinWilkinson1968 (imtql2) */
 export function symmetricEigenInPlace(matrix: Float64Array, size: number, eigenvalues: Float64Array, work: Float64Array): void {
   tridiagonalize(matrix, size, eigenvalues, work);
   diagonalize(matrix, size, eigenvalues, work);

@@ -7,8 +7,8 @@ export interface QuadratureRule {
 const rules = new Map<number, QuadratureRule>();
 
 /** Gauss-Legendre rule of `count` points on [-1, 1], nodes ascending; exact for polynomials of degree 2 count - 1.
- *  Valid: count >= 1. Newton iteration on the Legendre recurrence from the asymptotic roots.
- *  @source AbramowitzStegun1964 25.4.29, 22.7.10, 22.16.6 */
+ *  Valid: count >= 1. Newton iteration on the Legendre recurrence from roots of a cosine.
+ *  @source AbramowitzStegun1964 25.4.29, 22.7.10 */
 export function gaussLegendre(count: number): QuadratureRule {
   const known = rules.get(count);
   if (known) return known;

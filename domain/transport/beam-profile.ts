@@ -24,7 +24,7 @@ const azimuths = 24; // Gauss points over one eighth of a rectangle; 1e-6 for si
 
 /** Transform of a beam on its axis. A rectangle is the mean over azimuth of round beams that reach to its edge;
  *  a measured profile is a sum of round beams. Diameters of Gaussian beams are 1/e^2.
- *  @source Bracewell2000 table 13.2 (Hankel pairs of disk and Gaussian) */
+ *  @source Bracewell2000 chapter 13 (Hankel pairs of disk and Gaussian) */
 export function beamTransform(profile: BeamProfile): BeamTransform {
   switch (profile.shape) {
     case 'circle': {

@@ -19,7 +19,7 @@ export interface BroadBeam {
 /** Discrete ordinates with analytic depth dependence in each layer: two amplitudes per mode and layer, joined by Fresnel
  *  reflection and refraction at every interface, in one banded system. Air above and below.
  *  Shape: `perRegion` directions per hemisphere on either side of the critical angle.
- *  @source Chandrasekhar1960 chapter 3; Stamnes1988; Stamnes2017 section 3.3 */
+ *  @source Chandrasekhar1960 chapters 2 and 3; Stamnes1988; JinStamnes1994 (refracting layers) */
 export function solveBroadBeam(layers: readonly OpticalLayer[], perRegion: number): BroadBeam {
   const ordinates = makeOrdinates(
     layers.map((layer) => layer.refractiveIndex),

@@ -1,7 +1,7 @@
 import { gaussLegendre } from '../numeric/quadrature.js';
 
 /** Reflectance of a plane interface for unpolarized light that meets it from index `fromIndex` with cosine `cosine`.
- *  Valid: indices > 0, 0 <= cosine <= 1; 1 beyond the critical angle. @source BornWolf1999 section 1.5.2 eq. 21, 1.5.3 */
+ *  Valid: indices > 0, 0 <= cosine <= 1; 1 beyond the critical angle. @source BornWolf1999 section 1.5 */
 export function fresnelReflectance(fromIndex: number, toIndex: number, cosine: number): number {
   if (fromIndex === toIndex) return 0;
   const ratio = fromIndex / toIndex;
@@ -25,7 +25,7 @@ export interface FresnelMoments {
 
 /** Moments of the reflectance seen from index `fromIndex` >= `toIndex`.
  *  Gauss-Legendre apart from the critical angle, where the reflectance rises like a square root.
- *  @source Haskell1994 eqs. 2.3.5 to 2.3.7 */
+ *  @source Haskell1994 (partial-current boundary condition) */
 export function fresnelMoments(fromIndex: number, toIndex: number): FresnelMoments {
   const critical = fromIndex > toIndex ? Math.sqrt(1 - (toIndex / fromIndex) ** 2) : 0;
   let first = critical * critical;

@@ -14,7 +14,7 @@ const points = 12; // per smooth piece; moments of the reflectance good to 1e-6
 /** Marshak's condition with Fresnel reflection and refraction, on radiance over n^2: in the half-space of directions that leave
  *  the face, the moments of what leaves equal those of what is reflected plus what comes through.
  *  `downward` tells whether the medium lies below the face. The integral over cosines is cut at the critical angle.
- *  @source Marshak1947; Haskell1994 section 2 (partial reflection) */
+ *  @source Marshak1947; Haskell1994 (partial reflection) */
 export function faceCondition(ownIndex: number, beyondIndex: number, downward: boolean): FaceCondition {
   const own = new Float64Array(modeCount * harmonicCount);
   const beyond = new Float64Array(modeCount * harmonicCount);

@@ -26,7 +26,7 @@ export interface ScaledLayer {
   readonly moments: Float64Array;
 }
 
-/** Delta-M scaling at degree 3. @source Wiscombe1977 eqs. 14 to 20 */
+/** Delta-M scaling at degree 3. @source Wiscombe1977 */
 export function scaleLayer(layer: OpticalLayer): ScaledLayer {
   const g = layer.anisotropy;
   const forward = g ** (degree + 1);
@@ -58,7 +58,7 @@ const greatestTilt = 3000; // k nu above which modes would lie too close togethe
 
 /** Modes by rotating those of the plane problem into the complex direction (-i k nu, 0, kappa nu), kappa^2 = k^2 + 1/nu^2.
  *  Absorption is lifted where the diffusion length exceeds 3000/k: light of that frequency does not live as long.
- *  @source Panasyuk2006 section 3 (rotated reference frames); Liemert2012 section 2 */
+ *  @source Panasyuk2006 (rotated reference frames); Liemert2012 */
 export function harmonicModes(layer: ScaledLayer, k: number): HarmonicModes {
   const transport = layer.scattering * (1 - layer.moments[1]!);
   const least = (-transport + Math.sqrt(transport * transport + (4 / 3) * (k / greatestTilt) ** 2)) / 2;

@@ -1,7 +1,7 @@
 /** Real spherical harmonics up to degree 3, symmetric about the plane of the beam axis and one lateral direction:
  *  Ybar_lm(mu) c_m(phi), with Ybar normalized over mu in [-1, 1] and c_0 = 1, c_m = sqrt(2) cos(m phi).
  *  A radiance that varies like exp(i k x) is kept with factors i^m taken out, which makes everything real.
- *  Shape: entry (l, m) stands at l (l + 1)/2 + m. @source Davison1957 section 12.1 (moments of the transfer equation) */
+ *  Shape: entry (l, m) stands at l (l + 1)/2 + m. @source Davison1957 (method of spherical harmonics) */
 export const degree = 3;
 export const harmonicCount = ((degree + 1) * (degree + 2)) / 2;
 

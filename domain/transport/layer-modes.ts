@@ -26,7 +26,7 @@ const faintest = 1e-11; // least optical thickness: rays trapped in a wholly cle
 /** Eigenmodes of one layer with the Henyey-Greenstein phase function, delta-M scaled at `moments` terms.
  *  The phase function is expanded in polynomials orthonormal on the layer's own ordinates (Legendre polynomials where the
  *  quadrature is exact), so scattering keeps energy exactly with any ordinates.
- *  @source Wiscombe1977 eqs. 14 to 20 (delta-M); NakajimaTanaka1986 (symmetric eigenproblem); Stamnes1988 */
+ *  @source Wiscombe1977 (delta-M); NakajimaTanaka1986 (symmetric eigenproblem); Stamnes1988 */
 export function layerModes(layer: OpticalLayer, rays: LayerOrdinates, moments: number): LayerModes {
   const { count, cosines, weights } = rays;
   const extinction = Math.max(layer.absorptionPerCm + layer.scatteringPerCm, faintest / (layer.thicknessUm * 1e-4));

@@ -22,7 +22,7 @@ const sameIndex = 1e-7; // indices closer than this share their critical angle
  *  n^2 mu dmu being common, so net flux is kept exactly at interfaces.
  *  Shape: `perRegion` rays inside the escape cone and as many up to the least index, twice as many where there is no
  *  critical angle; half as many between the indices of different layers.
- *  @source Stamnes1988 (double-Gauss ordinates); Stamnes2017 section 3.3 (refracting interfaces) */
+ *  @source Stamnes1988 (double-Gauss ordinates); JinStamnes1994 (refracting interfaces) */
 export function makeOrdinates(indices: readonly number[], perRegion: number): Ordinates {
   const edges = [1];
   for (const index of [...indices].sort((a, b) => a - b)) {

@@ -34,7 +34,7 @@ function frequencyGrid(count: number, least: number, greatest: number): Float64A
 /** Third-degree spherical harmonics (P3) at every lateral frequency of one grid, joined through all layers with Fresnel
  *  reflection and refraction. The beam itself keeps its edges; only what it scatters spreads. Frequencies do not depend on
  *  the spot, so every spot of a stack shares them.
- *  @source Davison1957 chapter 12; Liemert2012 (layered media, Hankel transform) */
+ *  @source Davison1957 (method of spherical harmonics); Liemert2012 (Hankel transform of the lateral plane) */
 export function solveSpotSpread(layers: readonly OpticalLayer[]): SpotSpread {
   const scaled = layers.map(scaleLayer);
   const beam = collimatedBeam(
@@ -137,7 +137,7 @@ function scatteredFluence(s: FrequencySolution, layer: number, depth: number, re
 /** Fluence of the beam lost at lateral frequency k because the forward peak, which counts as unscattered, has a width: the integral
  *  of mu_s (g^4 - g^(k u)) over the way above, u the distance from the point, where k u exceeds 4.
  *  The small-angle solution for moments of the phase function beyond those that the harmonics follow.
- *  @source Dolin1966; Wang1950 */
+ *  @source Wells1969 */
 function peakLoss(layers: readonly ScaledLayer[], layer: number, depth: number, k: number): number {
   let loss = 0;
   let near = 0;
