@@ -93,7 +93,8 @@ export function fluenceForDamage(request: DamageFluenceRequest): number | null {
     else low = fluence;
     const reachedK = activation / Math.max(lnScale - ln, 1);
     const next = fluence + ((wantedK - reachedK) * activation) / (reachedK * reachedK * perJ);
-    if (Math.abs(next - fluence) <= 1e-7 * fluence || high - low <= 1e-7 * high) return Math.min(next, maxFluenceJPerCm2);
+    // Newton's error is about the square of its step.
+    if (Math.abs(next - fluence) <= 1e-4 * fluence || high - low <= 1e-7 * high) return Math.min(next, maxFluenceJPerCm2);
     if (next <= 0 && evaluate(0).ln >= lnTarget) return 0;
     if (next > low && next < high) fluence = next;
     else if (next >= high && high === maxFluenceJPerCm2) fluence = high;
