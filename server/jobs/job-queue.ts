@@ -5,6 +5,7 @@ export interface JobQueue {
   /** Drops a waiting job, or aborts the running one; true when there was one. */
   cancel(id: string): boolean;
   readonly waiting: number;
+  readonly isFull: boolean;
   /** Aborts the running job, drops the rest, and waits for the end. */
   close(): Promise<void>;
 }
@@ -25,7 +26,7 @@ export function openJobQueue(mostWaiting: number, work: (id: string, signal: Abo
   };
   return {
     offer: (id, fromEarlierProcess = false) => {
-      if (closed || (!fromEarlierProcess && waiting.length >= mostWaiting)) return false;
+      if (closed || (!fromEarlierProcess && running && waiting.length >= mostWaiting)) return false;
       waiting.push(id);
       startNext();
       return true;
@@ -39,6 +40,9 @@ export function openJobQueue(mostWaiting: number, work: (id: string, signal: Abo
     },
     get waiting() {
       return waiting.length;
+    },
+    get isFull() {
+      return closed || (running !== undefined && waiting.length >= mostWaiting);
     },
     close: async () => {
       closed = true;
