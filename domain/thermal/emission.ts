@@ -15,7 +15,8 @@ export interface PulseTrain {
   readonly pulseCount: number;
 }
 
-/** When light is emitted: the sub-pulses of one pulse, repeated by the train; ascending and without overlap.
+/** When light is emitted: the sub-pulses of one pulse, repeated by the train; ascending and without overlap. Of a train of more than
+ *  200 pulses those in the middle are spread evenly over their time.
  *  Throws: out-of-range (duration, count, rate), contradiction (overlap, fractions that do not sum to 1, pulse beyond the period). */
 export function emissionIntervals(pulse: Pulse, train?: PulseTrain): EmissionInterval[] {
   const single = singlePulse(pulse);
@@ -32,10 +33,21 @@ export function emissionIntervals(pulse: Pulse, train?: PulseTrain): EmissionInt
       periodS,
     });
   }
-  return Array.from({ length: pulseCount }, (_, pulseIndex) => pulseIndex * periodS).flatMap((shiftS) =>
-    single.map((part) => ({ ...part, startS: part.startS + shiftS, endS: part.endS + shiftS })),
-  );
+  const pulseAt = (index: number): EmissionInterval[] =>
+    single.map((part) => ({ ...part, startS: part.startS + index * periodS, endS: part.endS + index * periodS }));
+  if (pulseCount <= separateFirst + separateLast) return Array.from({ length: pulseCount }, (_, index) => pulseAt(index)).flat();
+  const resumeAt = pulseCount - separateLast;
+  return [
+    ...Array.from({ length: separateFirst }, (_, index) => pulseAt(index)).flat(),
+    { startS: separateFirst * periodS, endS: resumeAt * periodS, energyFraction: resumeAt - separateFirst },
+    ...Array.from({ length: separateLast }, (_, index) => pulseAt(resumeAt + index)).flat(),
+  ];
 }
+
+/** Pulses of a long train that are kept apart at its start and its end. What lies between is given as even emission of the same mean
+ *  power: it heats the same, and the hottest moments come at the end. */
+const separateFirst = 50;
+const separateLast = 150;
 
 /** End of the last interval. */
 export function emissionEndS(emission: readonly EmissionInterval[]): number {

@@ -1,5 +1,6 @@
 import type { Remarks } from '../quantities/caution.js';
 import { assertWithin, DomainError } from '../quantities/errors.js';
+import type { PulseTrain } from './emission.js';
 import type { CoolingFigure, ThermalFigures } from './thermal-figures.js';
 
 export type CoolingKind = 'none' | 'contact' | 'cryogen-spray' | 'chilled-air';
@@ -52,21 +53,51 @@ const usualDelayS = 0.02; // common practice, no source: delays of 10 to 40 ms
 const filmPerSpurt = 3;
 
 /** The phases of surface cooling from before the pulse to the end of time; what the request leaves open is filled in and named.
+ *  Contact and air act through a whole train; a spray is given before each of its pulses, where the last one's film has not gone
+ *  before the next spurt it acts without a break.
  *  Throws: out-of-range, unknown-reference (a figure is missing). */
 export function coolingPhases(
   cooling: Cooling | undefined,
   emissionEndS: number,
   figures: ThermalFigures,
   remarks: Remarks,
+  train?: PulseTrain,
 ): SurfacePhase[] {
   const air = stillAir(figures, remarks);
   if (cooling === undefined || cooling.kind === 'none') return [{ fromS: 0, toS: Number.POSITIVE_INFINITY, ...air }];
   const active = activeExchange(cooling, figures, remarks);
-  const [fromS, toS] = activeSpan(cooling, emissionEndS, remarks);
-  return [
-    { fromS, toS, ...active },
-    { fromS: toS, toS: Number.POSITIVE_INFINITY, ...air },
-  ];
+  const [firstFromS, firstToS] = activeSpan(cooling, emissionEndS, remarks);
+  const phases: SurfacePhase[] = [{ fromS: firstFromS, toS: firstToS, ...active }];
+  for (const shiftS of cooling.kind === 'cryogen-spray' ? laterSpurtsS(train, remarks) : []) {
+    const last = phases[phases.length - 1]!;
+    const fromS = firstFromS + shiftS;
+    const toS = firstToS + shiftS;
+    if (fromS <= last.toS) phases[phases.length - 1] = { ...last, toS };
+    else phases.push({ fromS: last.toS, toS: fromS, ...air }, { fromS, toS, ...active });
+  }
+  phases.push({ fromS: phases[phases.length - 1]!.toS, toS: Number.POSITIVE_INFINITY, ...air });
+  return phases;
+}
+
+const mostSpurts = 50;
+
+// When the spurts after the first come, relative to it.
+function laterSpurtsS(train: PulseTrain | undefined, remarks: Remarks): number[] {
+  if (train === undefined || train.pulseCount < 2) return [];
+  const isFew = train.pulseCount <= mostSpurts;
+  const spurts = isFew ? train.pulseCount : 1;
+  remarks.assume({
+    name: 'cooling.spurts',
+    value: spurts,
+    source: 'a spurt before each pulse: common practice',
+    status: 'convention',
+  });
+  if (isFew) return Array.from({ length: spurts - 1 }, (_, i) => (i + 1) / train.repetitionRateHz);
+  remarks.caution(
+    'one-spurt',
+    `In trains of more than ${mostSpurts} pulses a spurt is counted before the first pulse alone; this one has ${train.pulseCount}.`,
+  );
+  return [];
 }
 
 /** Warns when cooling takes the skin below the freezing point of water. */

@@ -21,6 +21,16 @@ describe('emission intervals', () => {
     expect(parts[4]!.startS).toBeCloseTo(0.2, 12);
   });
 
+  it('spreads the middle of a long train evenly and keeps its energy', () => {
+    const parts = emissionIntervals({ durationS: 1e-3 }, { repetitionRateHz: 100, pulseCount: 10000 });
+    expect(parts).toHaveLength(201);
+    expect(parts.reduce((sum, part) => sum + part.energyFraction, 0)).toBe(10000);
+    expect(emissionEndS(parts)).toBeCloseTo(99.991, 9);
+    parts.forEach((part, i) => {
+      if (i > 0) expect(part.startS).toBeGreaterThanOrEqual(parts[i - 1]!.endS);
+    });
+  });
+
   it.each([
     ['a pulse longer than the period', { durationS: 0.2 }, { repetitionRateHz: 10, pulseCount: 2 }, 'contradiction'],
     ['no duration', { durationS: 0 }, undefined, 'out-of-range'],

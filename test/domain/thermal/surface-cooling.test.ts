@@ -42,6 +42,24 @@ describe('cooling phases', () => {
     }
   });
 
+  it('repeat the spurt before each pulse of a train, with air between', () => {
+    const spray: Cooling = { kind: 'cryogen-spray', spurtS: 0.03, delayS: 0.02, postS: 0.1 };
+    const phases = coolingPhases(spray, 2.01, figures, new Remarks(), { repetitionRateHz: 1, pulseCount: 3 });
+    expect(phases.map((phase) => phase.temperatureC)).toEqual([-26, 23, -26, 23, -26, 23]);
+    expect(phases[2]!.fromS).toBeCloseTo(0.95, 12);
+    phases.forEach((phase, i) => {
+      if (i > 0) expect(phase.fromS).toBe(phases[i - 1]!.toS);
+    });
+  });
+
+  it('join spurts that come before the film of the last has gone, and give long trains one spurt with a caution', () => {
+    const spray: Cooling = { kind: 'cryogen-spray', spurtS: 0.03, delayS: 0.02, postS: 0.1 };
+    expect(coolingPhases(spray, 0.5, figures, new Remarks(), { repetitionRateHz: 10, pulseCount: 5 })).toHaveLength(2);
+    const remarks = new Remarks();
+    expect(coolingPhases(spray, 100, figures, remarks, { repetitionRateHz: 1, pulseCount: 100 })).toHaveLength(2);
+    expect(remarks.cautions.map((caution) => caution.code)).toEqual(['one-spurt']);
+  });
+
   it('name every default they fill in, and none that was given', () => {
     const remarks = new Remarks();
     phasesOf({ kind: 'contact' }, 0.01, remarks);
