@@ -29,7 +29,7 @@ export function planHeat(model: ExposureModel, pulse: Pulse, train?: Train): Hea
   const emission = emissionIntervals(pulse, train);
   const endS = emissionEndS(emission);
   const timesS = sampleTimesS(emission, tailS, sampleCount);
-  const phases = coolingPhases(cooling, endS, reference.thermal, remarks);
+  const phases = coolingPhases(cooling, endS, reference.thermal, remarks, train);
   const layered = prepareLayeredHeat({ grid, phases, emission, timesS, placesUm, modes });
   cautionIfFreezing(layered.coldestSurfaceC, remarks);
   const inclusion = target.inclusion;
