@@ -56,26 +56,28 @@ export interface HarmonicModes {
 
 const greatestTilt = 3000; // k nu above which modes would lie too close together for double precision (error about 1e-16 of its cube)
 
-/** Modes by rotating those of the plane problem into the complex direction (-i k nu, 0, kappa nu), kappa^2 = k^2 + 1/nu^2.
+export function emptyModes(): HarmonicModes {
+  return {
+    kappas: new Float64Array(modeCount),
+    vectors: new Float64Array(modeCount * harmonicCount),
+    beamAnswer: new Float64Array(harmonicCount),
+    fades: new Float64Array(modeCount),
+  };
+}
+
+const sigma = new Float64Array(degree + 1);
+const plane = new Float64Array(degree + 1);
+
+/** Fills `modes` for one layer and lateral frequency, rotating those of the plane problem into the complex direction
+ *  (-i k nu, 0, kappa nu), kappa^2 = k^2 + 1/nu^2.
  *  Absorption is lifted where the diffusion length exceeds 3000/k: light of that frequency does not live as long.
  *  @source Panasyuk2006 (rotated reference frames); Liemert2012 */
-export function harmonicModes(layer: ScaledLayer, k: number): HarmonicModes {
+export function fillModes(modes: HarmonicModes, layer: ScaledLayer, k: number): void {
   const transport = layer.scattering * (1 - layer.moments[1]!);
   const least = (-transport + Math.sqrt(transport * transport + (4 / 3) * (k / greatestTilt) ** 2)) / 2;
   const absorption = Math.max(layer.absorption, least, 1e-9);
-  const sigma = new Float64Array(degree + 1);
   for (let l = 0; l <= degree; l++) sigma[l] = absorption + layer.scattering * (1 - layer.moments[l]!);
 
-  const kappas = new Float64Array(modeCount);
-  const vectors = new Float64Array(modeCount * harmonicCount);
-  const plane = new Float64Array(degree + 1);
-  let next = 0;
-  const keep = (order: number, nu: number): void => {
-    const kappa = Math.sqrt(k * k + 1 / (nu * nu));
-    kappas[next] = kappa;
-    rotate(order, kappa * nu, k * nu, plane, vectors.subarray(next * harmonicCount, (next + 1) * harmonicCount));
-    next++;
-  };
   // order 0: nu^2 are the eigenvalues of a 2 x 2 problem in degrees 1 and 3
   const a1 = axialCoupling(1, 0);
   const a2 = axialCoupling(2, 0);
@@ -96,7 +98,7 @@ export function harmonicModes(layer: ScaledLayer, k: number): HarmonicModes {
     plane[3] = third;
     plane[0] = (a1 * first) / (nu * sigma[0]!);
     plane[2] = (a2 * first + a3 * third) / (nu * sigma[2]!);
-    keep(0, nu);
+    keepMode(modes, layer, nu2 === large ? 0 : 1, 0, nu, k);
   }
   // orders 1 and 2: one mode each
   const b2 = axialCoupling(2, 1);
@@ -105,21 +107,27 @@ export function harmonicModes(layer: ScaledLayer, k: number): HarmonicModes {
   plane[1] = b2 / (nu1 * sigma[1]!);
   plane[2] = 1;
   plane[3] = b3 / (nu1 * sigma[3]!);
-  keep(1, nu1);
+  keepMode(modes, layer, 2, 1, nu1, k);
   const c3 = axialCoupling(3, 2);
   const nu2 = c3 / Math.sqrt(sigma[2]! * sigma[3]!);
   plane[2] = c3 / (nu2 * sigma[2]!);
   plane[3] = 1;
-  keep(2, nu2);
+  keepMode(modes, layer, 3, 2, nu2, k);
+  answerToBeam(modes, layer, k);
+}
 
-  const fades = kappas.map((kappa) => Math.exp(-kappa * layer.thicknessCm));
-  return { kappas, vectors, beamAnswer: answerToBeam(layer, sigma, kappas, k), fades };
+/** Puts the plane mode in place `at`, rotated to frequency k. */
+function keepMode(modes: HarmonicModes, layer: ScaledLayer, at: number, order: number, nu: number, k: number): void {
+  const kappa = Math.sqrt(k * k + 1 / (nu * nu));
+  modes.kappas[at] = kappa;
+  modes.fades[at] = Math.exp(-kappa * layer.thicknessCm);
+  rotate(order, kappa * nu, k * nu, modes.vectors, at * harmonicCount);
 }
 
 const turned = Array.from({ length: degree }, () => new Float64Array(harmonicCount));
 
 /** Writes the plane mode of azimuthal order `order`, rotated by cosine `cosine` and sine -i `sine`, at unit length. */
-function rotate(order: number, cosine: number, sine: number, plane: Float64Array, result: Float64Array): void {
+function rotate(order: number, cosine: number, sine: number, result: Float64Array, offset: number): void {
   turned[0]![0] = 1;
   for (let m = 0; ; m++) {
     // raise degree within the same order about the turned axis
@@ -137,19 +145,19 @@ function rotate(order: number, cosine: number, sine: number, plane: Float64Array
   for (let i = 0; i < harmonicCount; i++) {
     const l = degrees[i]!;
     const value = l >= order ? plane[l]! * turned[order]![i]! : 0;
-    result[i] = value;
+    result[offset + i] = value;
     norm2 += value * value;
   }
   const scale = 1 / Math.sqrt(norm2);
-  for (let i = 0; i < harmonicCount; i++) result[i]! *= scale;
+  for (let i = 0; i < harmonicCount; i++) result[offset + i]! *= scale;
 }
 
 const equations = new Float64Array(harmonicCount * harmonicCount);
 
 /** Solves (Sigma + k X - extinction Z) f = source for a beam of unit irradiance. */
-function answerToBeam(layer: ScaledLayer, sigma: Float64Array, kappas: Float64Array, k: number): Float64Array {
+function answerToBeam(modes: HarmonicModes, layer: ScaledLayer, k: number): void {
   let decay = layer.extinction;
-  for (const kappa of kappas) if (Math.abs(decay - kappa) < 1e-6 * kappa) decay = kappa * (1 + 1e-6); // resonance
+  for (const kappa of modes.kappas) if (Math.abs(decay - kappa) < 1e-6 * kappa) decay = kappa * (1 + 1e-6); // resonance
   equations.fill(0);
   for (let i = 0; i < harmonicCount; i++) {
     const l = degrees[i]!;
@@ -171,12 +179,12 @@ function answerToBeam(layer: ScaledLayer, sigma: Float64Array, kappas: Float64Ar
       equations[i * harmonicCount + inner] = -other;
     }
   }
-  const answer = new Float64Array(harmonicCount);
+  const answer = modes.beamAnswer;
+  answer.fill(0);
   for (let l = 0; l <= degree; l++) {
     answer[harmonicPosition(l, 0)] = (layer.scattering / layer.index2) * layer.moments[l]! * Math.sqrt((2 * l + 1) / 2);
   }
   solveSmall(equations, answer);
-  return answer;
 }
 
 function solveSmall(a: Float64Array, x: Float64Array): void {

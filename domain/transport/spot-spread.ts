@@ -4,7 +4,7 @@ import type { OpticalLayer } from '../tissue/optical-layer.js';
 import { type BeamProfile, beamTransform } from './beam-profile.js';
 import { type CollimatedBeam, collimatedBeam } from './collimated.js';
 import { faceCondition } from './harmonic-faces.js';
-import { type HarmonicModes, harmonicModes, type ScaledLayer, scaleLayer } from './harmonic-modes.js';
+import { emptyModes, fillModes, type HarmonicModes, type ScaledLayer, scaleLayer } from './harmonic-modes.js';
 import { degree, harmonicCount, modeCount, reflectionSigns, testedPositions } from './harmonics.js';
 
 /** Points on the beam axis at which lateral spread has been worked out once for every spot. */
@@ -46,7 +46,15 @@ export function solveSpotSpread(layers: readonly OpticalLayer[]): SpotSpread {
     const below = layers[j + 1]?.refractiveIndex ?? 1;
     return { top: faceCondition(layer.refractiveIndex, above, true), bottom: faceCondition(layer.refractiveIndex, below, false) };
   });
-  const solve = (k: number): FrequencySolution => solveFrequency(scaled, faces, beam, k);
+  const modes = layers.map(emptyModes);
+  const size = 2 * modeCount * layers.length;
+  const band = Math.min(size - 1, 3 * modeCount - 1);
+  const matrix = makeBanded(size, band, band);
+  const solve = (k: number): FrequencySolution => {
+    for (const [j, layer] of scaled.entries()) fillModes(modes[j]!, layer, k);
+    matrix.values.fill(0);
+    return joinLayers(scaled, modes, faces, beam, matrix);
+  };
   const broad = solve(broadFrequency);
   const solved = new Map<Float64Array, FrequencySolution[]>();
   const tabulated = new WeakMap<SpreadPoints, Map<Float64Array, Float64Array>>();
@@ -156,12 +164,15 @@ function peakLoss(layers: readonly ScaledLayer[], layer: number, depth: number, 
 
 type Faces = readonly { top: ReturnType<typeof faceCondition>; bottom: ReturnType<typeof faceCondition> }[];
 
-function solveFrequency(layers: readonly ScaledLayer[], faces: Faces, beam: CollimatedBeam, k: number): FrequencySolution {
-  const modes = layers.map((layer) => harmonicModes(layer, k));
-  const size = 2 * modeCount * layers.length;
-  const band = Math.min(size - 1, 3 * modeCount - 1);
-  const matrix = makeBanded(size, band, band);
-  const right = new Float64Array(size);
+/** Joins the modes of all layers through every face; `matrix` is spent. */
+function joinLayers(
+  layers: readonly ScaledLayer[],
+  modes: readonly HarmonicModes[],
+  faces: Faces,
+  beam: CollimatedBeam,
+  matrix: BandedMatrix,
+): FrequencySolution {
+  const right = new Float64Array(matrix.size);
   const last = layers.length - 1;
   for (let j = 0; j <= last; j++) {
     const topRow = 2 * modeCount * j;
