@@ -26,7 +26,7 @@ export function methemoglobinFactor(temperatureC: number, convertedFraction: num
 }
 
 /** How much more heat a vessel takes up when its blood absorbs `factor` times as much: less than `factor`, for a vessel shades itself.
- *  Letters: (1 - exp(-2 f mu R)) / (1 - exp(-2 mu R)). @source Svaasand1995 */
+ *  Letters: (1 - exp(-2 f mu R)) / (1 - exp(-2 mu R)). @source SvaasandFiskerstrand1995 */
 export function shadedFactor(factor: number, absorptionPerCm: number, radiusUm: number): number {
   const depth = 2 * absorptionPerCm * radiusUm * 1e-4;
   return depth === 0 ? factor : Math.expm1(-factor * depth) / Math.expm1(-depth);

@@ -16,7 +16,7 @@ export interface Granule {
 /** Mean heat per volume in a sphere per fluence around it (1/cm), for straight rays: the absorbed share of the light on its cross
  *  section over its volume. Tends to the absorption coefficient when the sphere is clear, to 3 / (2 diameter) when it is black.
  *  Letters: x = mu_a d; efficiency Q = 1 - 2 (1 - (1 + x) exp(-x)) / x^2. Valid: spheres larger than the wavelength.
- *  @source vanDeHulst1957 sec. 11.22 (absorption in anomalous diffraction) */
+ *  @source VanDeHulst1957 sec. 11.22 (absorption in anomalous diffraction) */
 export function granuleHeatPerCm(absorptionPerCm: number, diameterUm: number): number {
   assertWithin('absorptionPerCm', absorptionPerCm, 0, 1e8);
   assertWithin('diameterUm', diameterUm, 1e-3, 1e4);
