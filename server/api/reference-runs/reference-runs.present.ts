@@ -1,5 +1,5 @@
-import type { Caution } from '../../../domain/quantities/caution.js';
 import type { RunAnswer } from '../../../domain/transport/monte-carlo.js';
+import type { presentCalculation } from '../../http/calculation.js';
 import type { RunOrder, StopReason } from '../../workers/pursue-run.js';
 import type { StoredRun } from './reference-runs.store.js';
 
@@ -12,7 +12,7 @@ export interface RunPlanRecord {
     readonly transmittance: number;
     readonly absorbedFraction: number;
   };
-  readonly basis: { readonly cautions: readonly Caution[]; readonly assumptions: readonly object[]; readonly provenance: object };
+  readonly basis: Pick<ReturnType<typeof presentCalculation>, 'cautions' | 'assumptions' | 'provenance'>;
 }
 
 export function presentRun(run: StoredRun) {

@@ -2,7 +2,7 @@ import { availableParallelism } from 'node:os';
 import { actorOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { decodeCursor, defaultLimit, pageOf } from '../../http/paging.js';
-import { itemReplies, listReplies } from '../../http/replies.js';
+import { bannered, itemReplies, listReplies } from '../../http/replies.js';
 import { openJobQueue } from '../../jobs/job-queue.js';
 import type { Parts } from '../../parts.js';
 import { openPhotonPool } from '../../workers/pool.js';
@@ -18,7 +18,7 @@ export function registerReferenceRunsRoutes(app: App, parts: Parts): void {
   const queue = openJobQueue(settings.referenceRunQueue, (id, signal) => workOnRun({ db, now, pool, reportFailure }, id, signal));
   const room = { ...parts, queue };
   app.addHook('onReady', async () => resumeRuns(db, queue));
-  app.addHook('preClose', async () => {
+  parts.closing.push(async () => {
     await queue.close();
     await pool.close();
   });
@@ -39,7 +39,7 @@ export function registerReferenceRunsRoutes(app: App, parts: Parts): void {
     },
     async (request, reply) => {
       const item = presentRun(startRun(room, actorOf(request).clinicId, request.body));
-      return reply.code(202).header('location', `${path}/${item.id}`).send({ banner: '', item });
+      return reply.code(202).header('location', `${path}/${item.id}`).send(bannered({ item }));
     },
   );
   app.get(
@@ -57,17 +57,17 @@ export function registerReferenceRunsRoutes(app: App, parts: Parts): void {
       const { limit = defaultLimit, cursor } = request.query;
       const rows = listRunsAfter(room, actorOf(request).clinicId, decodeCursor(cursor, 1)?.[0], limit + 1);
       const { items, next } = pageOf(request, reply, rows, limit, (row) => [row.id]);
-      return reply.send({ banner: '', items: items.map(presentRun), next });
+      return reply.send(bannered({ items: items.map(presentRun), next }));
     },
   );
   app.get(
     `${path}/:id`,
     { config, schema: { tags, summary: 'Read a reference run', params: RunId, response: itemReplies(ReferenceRunItem) } },
-    async (request) => ({ banner: '', item: presentRun(readRun(room, actorOf(request).clinicId, request.params.id)) }),
+    async (request) => bannered({ item: presentRun(readRun(room, actorOf(request).clinicId, request.params.id)) }),
   );
   app.delete(
     `${path}/:id`,
     { config, schema: { tags, summary: 'Cancel a reference run', params: RunId, response: itemReplies(ReferenceRunItem) } },
-    async (request) => ({ banner: '', item: presentRun(cancelRun(room, actorOf(request).clinicId, request.params.id)) }),
+    async (request) => bannered({ item: presentRun(cancelRun(room, actorOf(request).clinicId, request.params.id)) }),
   );
 }
