@@ -40,7 +40,7 @@ export function cem43Min(timesS: ArrayLike<number>, temperaturesC: ArrayLike<num
       sumS += durationS * (crossing * meanFactor(from, 0) + (1 - crossing) * meanFactor(0, to));
     } else sumS += durationS * meanFactor(from, to);
   }
-  return sumS / 60;
+  return Math.min(sumS / 60, Number.MAX_VALUE);
 }
 
 function meanFactor(from: number, to: number): number {
@@ -50,8 +50,8 @@ function meanFactor(from: number, to: number): number {
 
 // Mean of exp(x) while x runs linearly from one end to the other.
 function meanExponential(from: number, to: number): number {
-  const span = to - from;
-  return Math.exp(from) * (Math.abs(span) < 1e-8 ? 1 + span / 2 : Math.expm1(span) / span);
+  const span = Math.abs(to - from);
+  return Math.exp(Math.max(from, to)) * (span < 1e-8 ? 1 - span / 2 : -Math.expm1(-span) / span);
 }
 
 export interface DamageFluenceRequest {

@@ -23,15 +23,19 @@ export interface InclusionHeatRequest extends InclusionShape {
   /** Ascending, from 0. */
   readonly timesS: ArrayLike<number>;
   readonly placesRadiusUm: readonly number[];
+  /** Number of rings of equal width, center first, for which to give the answer apart; default 0. */
+  readonly rings?: number;
   /** Shared by requests, so that modes are worked out once. */
   readonly modes?: HeatModes;
 }
 
-/** `excessK` is the rise per J/cm3 deposited in the heated part, laid out [place * times + time]. */
+/** `excessK` is the rise per J/cm3 deposited evenly in the heated part, laid out [place * times + time]. */
 export interface InclusionHeat {
   readonly timesS: Float64Array;
   readonly placesRadiusUm: readonly number[];
   readonly excessK: Float64Array;
+  /** Rise per J/cm3 deposited in one ring of the heated part, [ring][place * times + time]. */
+  readonly ringsK: readonly Float64Array[];
 }
 
 /** Finite volumes around a cylinder (per meter of length) or sphere and their modes. */
@@ -42,6 +46,8 @@ export interface RadialModes extends ChainModes {
   readonly halfConductance: (cell: number, face: number) => number;
   /** Amplitude that each mode gets from 1 J/cm3 in the heated part. */
   readonly amplitudesPerJPerCm3: Float64Array;
+  /** The same for heat between two radii; a cell that lies there in part counts in part. */
+  readonly amplitudesWithin: (fromUm: number, toUm: number) => Float64Array;
 }
 
 /** Temperature rise in and around a heated cylinder or sphere in endless surroundings, exact in time (sum of modes).
@@ -50,20 +56,28 @@ export function prepareInclusionHeat(request: InclusionHeatRequest): InclusionHe
   const timesS = Float64Array.from(request.timesS);
   const count = timesS.length;
   const radial = radialModes(request, Math.max(timesS[count - 1] ?? 0, 1e-12), request.modes);
-  const { size, amplitudesPerJPerCm3 } = radial;
+  const { size } = radial;
   const weights = request.placesRadiusUm.map((radiusUm) => modalWeights(radial, radiusUm));
-  const excessK = new Float64Array(weights.length * count);
+  const { heatedRadiusUm = request.radiusUm, rings = 0 } = request;
+  const perRing = Array.from({ length: rings }, (_, ring) => {
+    return radial.amplitudesWithin((heatedRadiusUm * ring) / rings, (heatedRadiusUm * (ring + 1)) / rings);
+  });
+  const heats = [radial.amplitudesPerJPerCm3, ...perRing];
+  const answers = heats.map(() => new Float64Array(weights.length * count));
   const excitation = new Excitation(radial.ratesPerS, request.emission, 0);
   for (let time = 0; time < count; time++) {
     excitation.advanceTo(timesS[time]!);
     for (let place = 0; place < weights.length; place++) {
-      const weight = weights[place]!;
-      let sum = 0;
-      for (let mode = 0; mode < size; mode++) sum += weight[mode]! * amplitudesPerJPerCm3[mode]! * excitation.amplitudes[mode]!;
-      excessK[place * count + time] = sum;
+      const seen = weights[place]!.map((weight, mode) => weight * excitation.amplitudes[mode]!);
+      heats.forEach((heat, i) => {
+        let sum = 0;
+        for (let mode = 0; mode < size; mode++) sum += seen[mode]! * heat[mode]!;
+        answers[i]![place * count + time] = sum;
+      });
     }
   }
-  return { timesS, placesRadiusUm: request.placesRadiusUm, excessK };
+  const [excessK, ...ringsK] = answers as [Float64Array, ...Float64Array[]];
+  return { timesS, placesRadiusUm: request.placesRadiusUm, excessK, ringsK };
 }
 
 /** Modes around an inclusion, from the shared store when they are there. The grid reaches six diffusion lengths of the longest time
@@ -121,12 +135,16 @@ function makeRadialModes(shape: Required<InclusionShape>, longestS: number): Rad
     inSeries(halfConductance(i, i + 1), halfConductance(i + 1, i + 1)),
   );
   const chain = chainModes(capacity, conductance, 0);
-  const amplitudesPerJPerCm3 = chain.ratesPerS.map((_, mode) => {
-    let sum = 0;
-    for (let cell = 0; cell < size && centersUm[cell]! < heatedRadiusUm; cell++) {
-      sum += chain.modeOfCell[mode * size + cell]! * volumeM[cell]! * 1e6;
+  const amplitudesWithin = (fromUm: number, toUm: number): Float64Array => {
+    const amplitudes = new Float64Array(size);
+    for (let cell = 0; cell < size && facesUm[cell]! < toUm; cell++) {
+      const [innerM, outerM] = [Math.max(facesUm[cell]!, fromUm) * 1e-6, Math.min(facesUm[cell + 1]!, toUm) * 1e-6];
+      if (outerM <= innerM) continue;
+      const heatJ = (areaPerPower / (power + 1)) * (outerM ** (power + 1) - innerM ** (power + 1)) * 1e6;
+      for (let mode = 0; mode < size; mode++) amplitudes[mode]! += chain.modeOfCell[mode * size + cell]! * heatJ;
     }
-    return sum;
-  });
-  return { ...chain, facesUm, centersUm, capacity, halfConductance, amplitudesPerJPerCm3 };
+    return amplitudes;
+  };
+  const amplitudesPerJPerCm3 = amplitudesWithin(0, heatedRadiusUm);
+  return { ...chain, facesUm, centersUm, capacity, halfConductance, amplitudesPerJPerCm3, amplitudesWithin };
 }

@@ -3,7 +3,7 @@ import { assertWithin } from '../quantities/errors.js';
 /** The shapes whose cooling is known in closed form. `sizeUm` is thickness of a plane, diameter of a cylinder or sphere. */
 export type HeatGeometry = 'plane' | 'cylinder' | 'sphere';
 
-/** Thermal diffusivity of soft tissue, middle of the published 0.11-0.13 mm2/s; the lower end is the more usual one.
+/** Thermal diffusivity of soft tissue, lower end of the usual 0.11-0.13 mm2/s (from memory).
  *  @source Altshuler2001 */
 export const tissueDiffusivityMm2PerS = 0.11;
 

@@ -48,6 +48,18 @@ describe('equivalent minutes at 43 C', () => {
   });
 });
 
+describe('equivalent minutes far outside their range', () => {
+  it('stay finite', () => {
+    for (const ends of [
+      [37, 5000],
+      [5000, 37],
+      [5000, 5000],
+      [-200, 9000],
+    ])
+      expect(cem43Min([0, 1], ends)).toBeLessThanOrEqual(Number.MAX_VALUE);
+  });
+});
+
 describe('fluence for damage', () => {
   const timesS = logTimes(60);
   const request = { timesS, baselineC: timesS.map(() => 34), responseK: timesS.map((t) => 10 * rise(t)), pair: henriques };
