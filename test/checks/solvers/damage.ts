@@ -95,11 +95,11 @@ export const solvers: Record<string, (inputs: Inputs) => number> = {
   'temperature of unit damage rate': (inputs) => criticalTemperatureC(inputPair(inputs)),
   'cumulative equivalent minutes at 43 C': (inputs) =>
     cem43Min([0, inputs.durationS!], [inputs.temperatureC!, inputs.temperatureC!]),
-  'hot-water time to a second-degree burn': (inputs) => {
+  'hot-water time to a burn': (inputs) => {
     const pair = inputPair(inputs);
     const lnDamage = (lnTime: number): number => {
       const { timesS, temperaturesC } = basalHistory(sampleGrid, 1e5, inputs.temperatureC!, Math.exp(lnTime), 80);
-      return Math.log(damageIntegral(timesS, temperaturesC, pair) + 1e-300);
+      return Math.log(damageIntegral(timesS, temperaturesC, pair) / (inputs.damage ?? 1) + 1e-300);
     };
     return Math.exp(findRoot(lnDamage, Math.log(0.05), Math.log(1e5), { relativeTolerance: 1e-5 }));
   },
