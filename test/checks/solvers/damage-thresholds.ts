@@ -1,9 +1,11 @@
+import { integrate } from '../../../domain/numeric/quadrature.js';
 import { Remarks } from '../../../domain/quantities/caution.js';
 import { absorptionOf } from '../../../domain/spectra/chromophore.js';
 import { fluenceForDamage } from '../../../domain/thermal/damage.js';
 import { emissionIntervals } from '../../../domain/thermal/emission.js';
 import { granuleThresholdJPerCm2 } from '../../../domain/thermal/granule.js';
 import { makeHeatGrid } from '../../../domain/thermal/heat-grid.js';
+import { prepareInclusionHeat } from '../../../domain/thermal/inclusion-heat.js';
 import { prepareLayeredHeat } from '../../../domain/thermal/layered-heat.js';
 import { sampleTimesS } from '../../../domain/thermal/sample-times.js';
 import { resolveSkin } from '../../../domain/tissue/skin.js';
@@ -58,7 +60,35 @@ function bloodInVitro({ absorptionPerCm, durationS, heatCapacityJPerCm3K }: Inpu
   return { timesS: heat.timesS, baselineC: heat.baselineC, responseK };
 }
 
+// Blood vessel in a clear membrane, lit from one side: what its chords take up is spread evenly over its cross-section.
+function vesselThreshold({ absorptionPerCm, durationS }: Inputs, diameterUm: number): number {
+  const emission = emissionIntervals({ durationS: durationS! });
+  const timesS = sampleTimesS(emission, 1, 80);
+  const radiusUm = diameterUm / 2;
+  const { excessK } = prepareInclusionHeat({
+    geometry: 'cylinder',
+    radiusUm,
+    inside: material('blood'),
+    outside: material('water'),
+    emission,
+    timesS,
+    placesRadiusUm: [radiusUm],
+  });
+  const tau = absorptionPerCm! * diameterUm * 1e-4;
+  const absorbed = integrate((y) => -Math.expm1(-tau * Math.sqrt(1 - y * y)), 0, 1, 64);
+  const heatPerCm = (2 * absorbed) / (Math.PI * radiusUm * 1e-4);
+  const responseK = excessK.map((rise) => rise * heatPerCm);
+  const baselineC = timesS.map(() => 37);
+  return fluenceForDamage({ timesS, baselineC, responseK, pair: reference.thermal.damagePairs.get('vessel-wall')! })!;
+}
+
 export const solvers: Record<string, (inputs: Inputs) => number> = {
+  'vessel diameter that needs the least fluence': (inputs) => {
+    const diametersUm = Array.from({ length: 40 }, (_, i) => 5 * (i + 1));
+    const thresholds = diametersUm.map((diameterUm) => vesselThreshold(inputs, diameterUm));
+    return diametersUm[thresholds.indexOf(Math.min(...thresholds))]!;
+  },
+  'fluence that coagulates the wall of a vessel': (inputs) => vesselThreshold(inputs, inputs.diameterUm!),
   'fluence that disrupts melanosomes': melanosomeThreshold,
   'rise of whole blood at its surface': (inputs) => inputs.fluenceJPerCm2! * Math.max(...bloodInVitro(inputs).responseK),
   'fluence that coagulates whole blood': (inputs) =>
