@@ -34,6 +34,8 @@ export interface RunAnswer {
   readonly layerAbsorbedFractions: readonly Estimate[];
   /** Fluence rate on the axis over incident irradiance there. Shape: beam by beam, depth within. */
   readonly fluenceRatios: readonly (readonly Estimate[])[];
+  /** Light given up on after a million events in layers that hardly absorb; 0 in tissue. */
+  readonly abandonedFraction: number;
   /** Reflected, transmitted and absorbed light, weight given up on, less the net gain by roulette, less 1: rounding alone. */
   readonly balanceError: number;
 }
@@ -201,6 +203,7 @@ export function answerRun(plan: RunPlan, tally: Tally, photonsPerChunk: number):
     absorbedFraction: absorbed,
     layerAbsorbedFractions: layers,
     fluenceRatios: plan.weights.map((_, beam) => Array.from({ length: depths }, (_, depth) => estimate(beam * depths + depth))),
+    abandonedFraction: mean(abandoned),
     balanceError:
       specularReflectance +
       mean(diffuseReflectance) +

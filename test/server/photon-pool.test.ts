@@ -60,6 +60,6 @@ describe('photon runs on worker threads', () => {
   it('stop by time, but not before there is an error to state', async () => {
     const { state, stoppedBy } = await pursueRun({ ...order, maxSeconds: 0, chunkLimit: 1000 }, null, two, never, () => {});
     expect(stoppedBy).toBe('time');
-    expect(state.tally.chunks).toBe(32);
+    expect(state.tally.chunks).toBe(50);
   });
 });

@@ -92,6 +92,7 @@ describe('reference runs', () => {
       expect(Math.abs(differencesInStandardErrors[i])).toBeLessThan(6);
       expect((fluenceRatios[i] - fastFluenceRatios[i]) / standardErrors[i]).toBeCloseTo(differencesInStandardErrors[i], 9);
     }
+    expect(result.abandonedFraction).toBe(0);
     expect(item.provenance.seed).toBe(4);
     await close();
     const again = await openService('answer.sqlite');
@@ -156,14 +157,16 @@ describe('reference runs', () => {
   });
 
   it('go on after a restart from what was saved, to the same bytes as a run without one', async () => {
-    const longer = { ...quick, photons: 400_000, depthsMm: [0.06] };
+    const longer = { ...quick, photons: 100_000, depthsMm: [0.06] };
     const first = await openService('restart.sqlite');
     const { id } = (await first.start(longer).expect(202)).body.item;
     const later = (await first.start(quick).expect(202)).body.item.id;
-    while ((await first.read(id)).body.item.photonsDone === 0) await new Promise((resolve) => setTimeout(resolve, 20));
+    while ((await first.read(id)).body.item.photonsDone === 0) await new Promise((resolve) => setTimeout(resolve, 5));
     await first.close();
 
     const second = await openService('restart.sqlite');
+    const taken = (await second.read(id)).body.item;
+    expect(taken.photonsDone).toBeGreaterThan(0);
     const resumed = await second.ended(id);
     expect(resumed.status).toBe('done');
     expect((await second.ended(later)).status).toBe('done');

@@ -72,7 +72,7 @@ function beamOf({ spot, measuredProfile }: RunBody): BeamProfile | null {
 }
 
 function orderOf({ photons, standardErrorTarget, seed, maxSeconds }: RunBody, question: RunQuestion): RunOrder {
-  const photonsPerChunk = photons === undefined ? 2000 : Math.min(5000, Math.max(100, Math.ceil(photons / 64)));
+  const photonsPerChunk = photons === undefined ? 500 : Math.min(5000, Math.max(100, Math.ceil(photons / 64)));
   return {
     question,
     seed: seed ?? usualSeed,

@@ -20,6 +20,7 @@ export interface RunParts {
 
 /** Works on one run until it ends or is aborted; an aborted run that nobody cancelled stays unfinished for the next process. */
 export async function workOnRun({ db, now, pool, reportFailure }: RunParts, id: string, signal: AbortSignal): Promise<void> {
+  let keep = () => {};
   try {
     const taken = takeRun(db, id);
     if (!taken) return;
@@ -30,11 +31,12 @@ export async function workOnRun({ db, now, pool, reportFailure }: RunParts, id: 
       forgetRunState(db, id, engine);
       start = null;
     }
-    let savedMs = performance.now();
+    let savedMs = Number.NEGATIVE_INFINITY;
     const { state, stoppedBy } = await pursueRun(order, start, pool, signal, (reached) => {
+      keep = () => saveRunState(db, id, reached, progressFraction(order, reached));
       if (performance.now() - savedMs < saveEveryMs) return;
       savedMs = performance.now();
-      saveRunState(db, id, reached, progressFraction(order, reached));
+      keep();
     });
     saveRunState(db, id, state, 1);
     const plan = planRun(order.question);
@@ -42,9 +44,12 @@ export async function workOnRun({ db, now, pool, reportFailure }: RunParts, id: 
     const result = presentAnswer(record, answer, plan.resolutionsUm, stoppedBy, state.elapsedS);
     endRun(db, id, { status: 'done', finishedAt: now().toISOString(), result: JSON.stringify(result) });
   } catch (error) {
-    if (signal.aborted) return;
-    reportFailure(id, error);
     try {
+      if (signal.aborted) {
+        keep();
+        return;
+      }
+      reportFailure(id, error);
       const failure = 'The run broke off inside; the log has the reason. Send the request again.';
       endRun(db, id, { status: 'failed', finishedAt: now().toISOString(), failure });
     } catch (storing) {

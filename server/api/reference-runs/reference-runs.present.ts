@@ -57,6 +57,7 @@ export function presentAnswer(
       transmittance: fast.transmittance,
       absorbedFraction: fast.absorbedFraction,
     },
+    abandonedFraction: answer.abandonedFraction,
     energyBalanceError: answer.balanceError,
     photons: answer.photons,
     stoppedBy,

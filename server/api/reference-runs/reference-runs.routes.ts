@@ -1,4 +1,5 @@
 import { availableParallelism } from 'node:os';
+import { Gauge } from 'prom-client';
 import { actorOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { decodeCursor, defaultLimit, pageOf } from '../../http/paging.js';
@@ -16,6 +17,14 @@ export function registerReferenceRunsRoutes(app: App, parts: Parts): void {
   const pool = openPhotonPool(settings.workerThreads || availableParallelism());
   const reportFailure = (id: string, error: unknown) => app.log.error({ err: error, run: id }, 'reference run failed');
   const queue = openJobQueue(settings.referenceRunQueue, (id, signal) => workOnRun({ db, now, pool, reportFailure }, id, signal));
+  new Gauge({
+    name: 'reference_runs_waiting',
+    help: 'Reference runs that wait for their turn',
+    registers: [parts.metrics],
+    collect() {
+      this.set(queue.waiting);
+    },
+  });
   const room = { ...parts, queue };
   app.addHook('onReady', async () => resumeRuns(db, queue));
   parts.closing.push(async () => {
@@ -63,7 +72,10 @@ export function registerReferenceRunsRoutes(app: App, parts: Parts): void {
   app.get(
     `${path}/:id`,
     { config, schema: { tags, summary: 'Read a reference run', params: RunId, response: itemReplies(ReferenceRunItem) } },
-    async (request) => bannered({ item: presentRun(readRun(room, actorOf(request).clinicId, request.params.id)) }),
+    async (request, reply) => {
+      const run = readRun(room, actorOf(request).clinicId, request.params.id);
+      return reply.header('etag', `"${run.status}-${run.chunks}"`).send(bannered({ item: presentRun(run) }));
+    },
   );
   app.delete(
     `${path}/:id`,

@@ -98,6 +98,7 @@ export const ReferenceResult = z
     absorbedFraction: estimate,
     layerAbsorbedFractions: z.array(estimate.extend({ name: z.string() })),
     fast: z.object({ diffuseReflectance: z.number(), transmittance: z.number(), absorbedFraction: z.number() }),
+    abandonedFraction: z.number().describe('Light given up on in layers that hardly absorb; 0 in tissue'),
     energyBalanceError: z.number().describe('Of the sum of all light, less 1; rounding alone'),
     photons: z.int(),
     stoppedBy: z.enum(['photons', 'standard-error', 'time']),
