@@ -19,6 +19,40 @@ export function choleskyInPlace(matrix: Float64Array, size: number): void {
   }
 }
 
+/** Solves matrix x = right by Gaussian elimination with row pivoting; `matrix` is spent and `right` becomes x.
+ *  Shape: row-major. Throws: no-solution when a pivot vanishes. @source GolubVanLoan2013 section 3.4 */
+export function solveDenseInPlace(matrix: Float64Array, right: Float64Array): void {
+  const size = right.length;
+  for (let i = 0; i < size; i++) {
+    let pivot = i;
+    for (let r = i + 1; r < size; r++) {
+      if (Math.abs(matrix[r * size + i]!) > Math.abs(matrix[pivot * size + i]!)) pivot = r;
+    }
+    if (matrix[pivot * size + i] === 0) throw new DomainError('no-solution', 'a linear system is singular', { row: i });
+    if (pivot !== i) {
+      for (let c = i; c < size; c++) {
+        const kept = matrix[i * size + c]!;
+        matrix[i * size + c] = matrix[pivot * size + c]!;
+        matrix[pivot * size + c] = kept;
+      }
+      const kept = right[i]!;
+      right[i] = right[pivot]!;
+      right[pivot] = kept;
+    }
+    for (let r = i + 1; r < size; r++) {
+      const factor = matrix[r * size + i]! / matrix[i * size + i]!;
+      if (factor === 0) continue;
+      for (let c = i + 1; c < size; c++) matrix[r * size + c]! -= factor * matrix[i * size + c]!;
+      right[r]! -= factor * right[i]!;
+    }
+  }
+  for (let i = size - 1; i >= 0; i--) {
+    let sum = right[i]!;
+    for (let c = i + 1; c < size; c++) sum -= matrix[i * size + c]! * right[c]!;
+    right[i] = sum / matrix[i * size + i]!;
+  }
+}
+
 /** Eigenvalues and orthonormal eigenvectors of a small symmetric matrix.
  *  Shape: row-major; on return `matrix` holds eigenvectors in its columns, `eigenvalues` their values, unsorted.
  *  Householder reduction to tridiagonal form, then implicit QL. Throws: not-converged.

@@ -20,6 +20,25 @@ export interface BeamTransform {
   readonly reachCm: number;
 }
 
+/** Least width of the flat beam that spreads about alike. A Gaussian of 1/e^2 diameter d counts as d/sqrt(2): the flat circle of
+ *  its power and peak irradiance; a measured profile counts as wide as it is at half its irradiance on the axis. */
+export function flatWidthMm(beam: BeamProfile): number {
+  switch (beam.shape) {
+    case 'circle':
+      return beam.diameterMm;
+    case 'gaussian':
+      return beam.diameterMm * Math.SQRT1_2;
+    case 'square':
+      return beam.widthMm;
+    case 'rectangle':
+      return Math.min(beam.widthMm, beam.heightMm);
+    case 'measured': {
+      const half = beam.relativeIrradiances.findIndex((irradiance) => irradiance < beam.relativeIrradiances[0]! / 2);
+      return 2 * beam.radiiMm[half < 0 ? beam.radiiMm.length - 1 : half]!;
+    }
+  }
+}
+
 const azimuths = 24; // Gauss points over one eighth of a rectangle; 1e-6 for sides up to 1:4 at k a = 100
 
 /** Transform of a beam on its axis. A rectangle is the mean over azimuth of round beams that reach to its edge;

@@ -1,31 +1,31 @@
 import { gaussLegendre } from '../numeric/quadrature.js';
 import { fresnelReflectance } from './fresnel.js';
-import { harmonicCount, harmonicsAt, modeCount, oddPositions, reflectionSigns, testedPositions } from './harmonics.js';
+import { type Harmonics, harmonicsAt } from './harmonics.js';
 
 /** Condition on the light that leaves a face into one medium: own moments plus those of the medium beyond vanish.
- *  Shape: modeCount rows (odd harmonics as test functions) x harmonicCount columns, row-major. */
+ *  Shape: one row per odd harmonic (the test functions) x one column per harmonic, row-major. */
 export interface FaceCondition {
   readonly own: Float64Array;
   readonly beyond: Float64Array;
 }
 
-const points = 12; // per smooth piece; moments of the reflectance good to 1e-6
-
 /** Marshak's condition with Fresnel reflection and refraction, on radiance over n^2: in the half-space of directions that leave
  *  the face, the moments of what leaves equal those of what is reflected plus what comes through.
  *  `downward` tells whether the medium lies below the face. The integral over cosines is cut at the critical angle.
  *  @source Marshak1947; Haskell1994 (partial reflection) */
-export function faceCondition(ownIndex: number, beyondIndex: number, downward: boolean): FaceCondition {
-  const own = new Float64Array(modeCount * harmonicCount);
-  const beyond = new Float64Array(modeCount * harmonicCount);
-  const here = new Float64Array(harmonicCount);
-  const there = new Float64Array(harmonicCount);
+export function faceCondition(harmonics: Harmonics, ownIndex: number, beyondIndex: number, downward: boolean): FaceCondition {
+  const { degree, count, modeCount, oddPositions, reflectionSigns, testedPositions } = harmonics;
+  const points = degree + 9; // per smooth piece; moments of the reflectance good to 1e-6
+  const own = new Float64Array(modeCount * count);
+  const beyond = new Float64Array(modeCount * count);
+  const here = new Float64Array(count);
+  const there = new Float64Array(count);
   const { nodes, weights } = gaussLegendre(points);
   const critical = ownIndex > beyondIndex ? Math.sqrt(1 - (beyondIndex / ownIndex) ** 2) : 0;
 
   const add = (mu: number, muBeyond: number, reflectance: number, step: number): void => {
-    harmonicsAt(mu, here);
-    harmonicsAt(muBeyond, there);
+    harmonicsAt(harmonics, mu, here);
+    harmonicsAt(harmonics, muBeyond, there);
     for (let row = 0; row < modeCount; row++) {
       const tested = oddPositions[row]!;
       const weight = step * here[tested]!;
@@ -33,8 +33,8 @@ export function faceCondition(ownIndex: number, beyondIndex: number, downward: b
         const parity = reflectionSigns[i]!;
         const leaving = downward ? 1 : parity;
         const arriving = downward ? parity : 1;
-        own[row * harmonicCount + i]! += weight * here[i]! * (leaving - reflectance * arriving);
-        beyond[row * harmonicCount + i]! -= weight * there[i]! * (1 - reflectance) * leaving;
+        own[row * count + i]! += weight * here[i]! * (leaving - reflectance * arriving);
+        beyond[row * count + i]! -= weight * there[i]! * (1 - reflectance) * leaving;
       }
     }
   };

@@ -1,30 +1,26 @@
-/** Real spherical harmonics up to degree 3, symmetric about the plane of the beam axis and one lateral direction:
+/** Real spherical harmonics up to an odd degree, symmetric about the plane of the beam axis and one lateral direction:
  *  Ybar_lm(mu) c_m(phi), with Ybar normalized over mu in [-1, 1] and c_0 = 1, c_m = sqrt(2) cos(m phi).
  *  A radiance that varies like exp(i k x) is kept with factors i^m taken out, which makes everything real.
  *  Shape: entry (l, m) stands at l (l + 1)/2 + m. @source Davison1957 (method of spherical harmonics) */
-export const degree = 3;
-export const harmonicCount = ((degree + 1) * (degree + 2)) / 2;
+export interface Harmonics {
+  readonly degree: number;
+  readonly count: number;
+  /** Modes that travel each way: as many as harmonics odd under reflection of depth (l + m odd). */
+  readonly modeCount: number;
+  readonly degrees: readonly number[];
+  readonly orders: readonly number[];
+  readonly oddPositions: readonly number[];
+  /** Sign of each harmonic under reflection of depth. */
+  readonly reflectionSigns: Float64Array;
+  /** For each odd harmonic, the positions of all harmonics of its order: the only ones that a face couples with it. */
+  readonly testedPositions: readonly Int32Array[];
+  /** Per degree l and target order m: couplings to (l + 1, m) from (l, m), (l, m - 1) and (l, m + 1). */
+  readonly raising: readonly Float64Array[];
+}
 
 export function harmonicPosition(l: number, m: number): number {
   return (l * (l + 1)) / 2 + m;
 }
-
-const members: { l: number; m: number }[] = [];
-for (let l = 0; l <= degree; l++) for (let m = 0; m <= l; m++) members.push({ l, m });
-
-/** Positions of the harmonics odd under reflection of depth (l + m odd): as many as there are modes each way. */
-export const oddPositions = members.flatMap(({ l, m }, i) => ((l + m) % 2 === 1 ? [i] : []));
-export const modeCount = oddPositions.length;
-export const degrees = members.map(({ l }) => l);
-export const orders = members.map(({ m }) => m);
-
-/** Sign of each harmonic under reflection of depth. */
-export const reflectionSigns = Float64Array.from(members, ({ l, m }) => ((l + m) % 2 === 0 ? 1 : -1));
-
-/** For each odd harmonic, the positions of all harmonics of its order: the only ones a face couples with it. */
-export const testedPositions = oddPositions.map((tested) =>
-  Int32Array.from(members.flatMap(({ m }, i) => (m === orders[tested] ? [i] : []))),
-);
 
 /** Coupling of (l, m) with (l - 1, m) by the cosine of depth. */
 export function axialCoupling(l: number, m: number): number {
@@ -38,9 +34,46 @@ export function lateralCoupling(l: number, m: number, side: 1 | -1): number {
   return share * Math.sqrt(((l + turned + 1) * (l + turned + 2)) / ((2 * l + 1) * (2 * l + 3)));
 }
 
-/** Raises a function of degree l to degree l + 1: the part of that degree of (axial mu + lateral direction) times it.
- *  Shape: `from` and `to` are offsets of the blocks of degree l and l + 1 in `values` and `result`. */
+const known = new Map<number, Harmonics>();
+
+/** Index tables of all harmonics up to `degree`. Valid: odd degree >= 1. */
+export function harmonicsUpTo(degree: number): Harmonics {
+  let harmonics = known.get(degree);
+  if (!harmonics) {
+    harmonics = listHarmonics(degree);
+    known.set(degree, harmonics);
+  }
+  return harmonics;
+}
+
+function listHarmonics(degree: number): Harmonics {
+  const members: { l: number; m: number }[] = [];
+  for (let l = 0; l <= degree; l++) for (let m = 0; m <= l; m++) members.push({ l, m });
+  const odd = members.flatMap(({ l, m }, i) => ((l + m) % 2 === 1 ? [i] : []));
+  return {
+    degree,
+    count: members.length,
+    modeCount: odd.length,
+    degrees: members.map(({ l }) => l),
+    orders: members.map(({ m }) => m),
+    oddPositions: odd,
+    reflectionSigns: Float64Array.from(members, ({ l, m }) => ((l + m) % 2 === 0 ? 1 : -1)),
+    testedPositions: odd.map((tested) => Int32Array.from(members.flatMap(({ m }, i) => (m === members[tested]!.m ? [i] : [])))),
+    raising: Array.from({ length: degree }, (_, l) =>
+      Float64Array.from({ length: 3 * (l + 2) }, (_, i) => {
+        const m = Math.floor(i / 3);
+        if (i % 3 === 0) return m <= l ? axialCoupling(l + 1, m) : 0;
+        if (i % 3 === 1) return m >= 1 ? lateralCoupling(l, m - 1, 1) : 0;
+        return m + 1 <= l ? lateralCoupling(l, m + 1, -1) : 0;
+      }),
+    ),
+  };
+}
+
+/** Raises a function of degree l to degree l + 1: the part of that degree of (axial mu + lateral direction) times it,
+ *  times `factor`, written into the block of degree l + 1 of `result`. */
 export function raiseDegree(
+  { raising }: Harmonics,
   values: Float64Array,
   l: number,
   axial: number,
@@ -60,18 +93,8 @@ export function raiseDegree(
   }
 }
 
-/** Per degree: for each target m, couplings from (l, m), (l, m - 1) and (l, m + 1). */
-const raising = Array.from({ length: degree }, (_, l) =>
-  Float64Array.from({ length: 3 * (l + 2) }, (_, i) => {
-    const m = Math.floor(i / 3);
-    if (i % 3 === 0) return m <= l ? axialCoupling(l + 1, m) : 0;
-    if (i % 3 === 1) return m >= 1 ? lateralCoupling(l, m - 1, 1) : 0;
-    return m + 1 <= l ? lateralCoupling(l, m + 1, -1) : 0;
-  }),
-);
-
 /** Values of every Ybar_lm at cosine mu, 0 <= mu <= 1, written into `result`. */
-export function harmonicsAt(mu: number, result: Float64Array): void {
+export function harmonicsAt({ degree }: Harmonics, mu: number, result: Float64Array): void {
   const sine = Math.sqrt(Math.max(0, 1 - mu * mu));
   let sectoral = Math.SQRT1_2;
   for (let m = 0; m <= degree; m++) {

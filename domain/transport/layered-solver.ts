@@ -1,6 +1,6 @@
 import { assertWithin, DomainError } from '../quantities/errors.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
-import type { BeamProfile } from './beam-profile.js';
+import { type BeamProfile, flatWidthMm } from './beam-profile.js';
 import { solveBroadBeam } from './broad-beam.js';
 import { type SpotSpread, type SpreadPoints, solveSpotSpread } from './spot-spread.js';
 
@@ -29,6 +29,12 @@ export interface LightSolution {
 
 const ordinatesPerRegion = { ranking: 5, fine: 16 } as const; // directions each side of the critical angle
 
+/** Degree of harmonics in the ranking setting: the narrower the beam, the finer the detail of scattering that shows. */
+function degreeFor(widthMm: number): number {
+  if (widthMm >= 2) return 3;
+  return widthMm >= 0.4 ? 5 : 7;
+}
+
 const rounding = 1e-12; // a depth summed in another order than the layers may pass the bottom by this much
 
 /** Solves light transport: broad beam by discrete ordinates, finite spots by their ratio to it.
@@ -36,7 +42,7 @@ const rounding = 1e-12; // a depth summed in another order than the layers may p
 export function solveLight(layers: readonly OpticalLayer[], options: LightOptions): LightSolution {
   checkLayers(layers);
   const broad = solveBroadBeam(layers, ordinatesPerRegion[options.accuracy]);
-  let spread: SpotSpread | undefined;
+  const spreads = new Map<number, SpotSpread>();
   const tops: number[] = [0];
   for (const layer of layers) tops.push(tops[tops.length - 1]! + layer.thicknessUm);
   const bottom = tops[layers.length]!;
@@ -57,7 +63,9 @@ export function solveLight(layers: readonly OpticalLayer[], options: LightOption
   };
   const spreadBy = (spot: BeamProfile | null, points: SpreadPoints, broadValues: Float64Array): Float64Array => {
     if (spot === null) return broadValues.slice();
-    spread ??= solveSpotSpread(layers);
+    const degree = options.accuracy === 'fine' ? 7 : degreeFor(flatWidthMm(spot));
+    const spread = spreads.get(degree) ?? solveSpotSpread(layers, degree);
+    spreads.set(degree, spread);
     return spread.ratios(spot, points).map((ratio, i) => ratio * broadValues[i]!);
   };
 

@@ -1,13 +1,13 @@
 import { fc, test } from '@fast-check/vitest';
 import { describe, expect, it } from 'vitest';
-import { choleskyInPlace, symmetricEigenInPlace } from '../../../domain/numeric/dense.js';
+import { choleskyInPlace, solveDenseInPlace, symmetricEigenInPlace } from '../../../domain/numeric/dense.js';
 import { DomainError } from '../../../domain/quantities/errors.js';
 
 const symmetric = fc.integer({ min: 1, max: 9 }).chain((size) =>
-  fc.array(fc.double({ min: -1, max: 1, noNaN: true }), { minLength: size * size, maxLength: size * size }).map((numbers) => {
+  fc.array(fc.integer({ min: -1000, max: 1000 }), { minLength: size * size, maxLength: size * size }).map((numbers) => {
     const matrix = new Float64Array(size * size);
     for (let i = 0; i < size; i++) {
-      for (let j = 0; j <= i; j++) matrix[i * size + j] = matrix[j * size + i] = numbers[i * size + j]!;
+      for (let j = 0; j <= i; j++) matrix[i * size + j] = matrix[j * size + i] = numbers[i * size + j]! / 1000;
     }
     return { size, matrix };
   }),
@@ -30,6 +30,19 @@ describe('dense symmetric matrices', () => {
         expect(overlap).toBeCloseTo(i === j ? 1 : 0, 12);
       }
     }
+  });
+
+  test.prop([symmetric])('solve a system that they multiply back to', ({ size, matrix }) => {
+    const shifted = matrix.map((value, i) => (i % (size + 1) === 0 ? value + 10 : value));
+    const right = Float64Array.from({ length: size }, (_, i) => i - 1.5);
+    const x = right.slice();
+    solveDenseInPlace(shifted.slice(), x);
+    for (let i = 0; i < size; i++) {
+      let product = 0;
+      for (let j = 0; j < size; j++) product += shifted[i * size + j]! * x[j]!;
+      expect(product).toBeCloseTo(right[i]!, 10);
+    }
+    expect(() => solveDenseInPlace(new Float64Array(4), new Float64Array(2))).toThrow(DomainError);
   });
 
   it('have a Cholesky factor when positive definite, and are refused otherwise', () => {
