@@ -13,7 +13,7 @@ export const fullThicknessDamage = 1e4;
  *  1/T. Temperatures are not capped: above boiling the history itself no longer holds, and the caller reports that.
  *  @source Henriques1947 */
 export function damageIntegral(timesS: ArrayLike<number>, temperaturesC: ArrayLike<number>, pair: DamagePair): number {
-  return Math.min(Math.exp(sumDamage(timesS, temperaturesC, null, 0, pair, { ln: 0, perJ: 0 }).ln), Number.MAX_VALUE);
+  return Math.min(Math.exp(lnDamage(timesS, temperaturesC, null, 0, pair)), Number.MAX_VALUE);
 }
 
 /** Time at a constant temperature until the damage integral is 1. */
@@ -71,31 +71,33 @@ const maxSteps = 80;
 const usualDurationS = 1e-3; // scales the effective temperature only; any duration gives the same root
 
 /** Fluence at which baseline + fluence x response reaches a damage integral: null when none up to the greatest does, 0 when the
- *  baseline alone does. Newton's steps are taken not on ln(integral) but on the effective temperature
- *  Ea / (R ln(A t / integral)), which is nearly linear in fluence, and are kept inside a bracket. Relative accuracy 1e-7. */
+ *  baseline alone does. The root is sought not in ln(integral) but in the effective temperature Ea / (R ln(A t / integral)), which is
+ *  nearly linear in fluence, by secants that are kept inside a bracket. Relative accuracy 1e-6. */
 export function fluenceForDamage(request: DamageFluenceRequest): number | null {
   const { timesS, baselineC, responseK, pair, target = 1, maxFluenceJPerCm2 = 1000 } = request;
   const activation = activationK(pair);
+  const peakPerJ = greatest(responseK);
   const lnScale = Math.log(pair.frequencyFactorPerS * usualDurationS);
   const wantedK = activation / (lnScale - Math.log(target));
-  const peakPerJ = greatest(responseK);
-  const damage: DamageSum = { ln: 0, perJ: 0 };
-  const evaluate = (fluence: number): DamageSum => sumDamage(timesS, baselineC, responseK, fluence, pair, damage);
-  const lnTarget = Math.log(target);
-  if (!(peakPerJ > 0)) return evaluate(0).ln >= lnTarget ? 0 : null;
+  const effectiveK = (fluence: number): number =>
+    activation / Math.max(lnScale - lnDamage(timesS, baselineC, responseK, fluence, pair), 1);
+  if (!(peakPerJ > 0)) return effectiveK(0) >= wantedK ? 0 : null;
   let low = 0;
   let high = maxFluenceJPerCm2;
   let fluence = Math.min(high, Math.max(wantedK - zeroCelsiusK - greatest(baselineC), 1) / peakPerJ);
-  for (let step = 0; step < maxSteps; step++) {
-    const { ln, perJ } = evaluate(fluence);
-    if (ln >= lnTarget) high = fluence;
+  let kPerJ = peakPerJ;
+  for (let step = 0, before = 0, beforeK = 0; step < maxSteps; step++) {
+    const reachedK = effectiveK(fluence);
+    if (reachedK >= wantedK) high = fluence;
     else if (fluence === maxFluenceJPerCm2) return null;
     else low = fluence;
-    const reachedK = activation / Math.max(lnScale - ln, 1);
-    const next = fluence + ((wantedK - reachedK) * activation) / (reachedK * reachedK * perJ);
-    // Newton's error is about the square of its step.
-    if (Math.abs(next - fluence) <= 1e-4 * fluence || high - low <= 1e-7 * high) return Math.min(next, maxFluenceJPerCm2);
-    if (next <= 0 && evaluate(0).ln >= lnTarget) return 0;
+    if (step > 0) kPerJ = (reachedK - beforeK) / (fluence - before);
+    [before, beforeK] = [fluence, reachedK];
+    const next = fluence + (wantedK - reachedK) / kPerJ;
+    // A secant's error is about the product of the last two steps.
+    if ((step > 0 && Math.abs(next - fluence) <= 1e-4 * fluence) || high - low <= 1e-7 * high)
+      return Math.min(next, maxFluenceJPerCm2);
+    if (next <= 0 && effectiveK(0) >= wantedK) return 0;
     if (next > low && next < high) fluence = next;
     else if (next >= high && high === maxFluenceJPerCm2) fluence = high;
     else fluence = 0.5 * (low + high);
@@ -113,23 +115,16 @@ function greatest(values: ArrayLike<number>): number {
   return result;
 }
 
-/** Logarithm of a damage integral and its derivative with respect to fluence. */
-interface DamageSum {
-  ln: number;
-  perJ: number;
-}
-
 const negligible = -36; // exp(-36) = 2e-16 of the fastest rate
 
-// Damage integral of baseline + fluence x rise, summed relative to the fastest rate so that nothing overflows.
-function sumDamage(
+// Logarithm of the damage integral of baseline + fluence x rise, summed relative to the fastest rate so that nothing overflows.
+function lnDamage(
   timesS: ArrayLike<number>,
   baselineC: ArrayLike<number>,
   riseK: ArrayLike<number> | null,
   fluence: number,
   pair: DamagePair,
-  into: DamageSum,
-): DamageSum {
+): number {
   const activation = activationK(pair);
   const count = timesS.length;
   let hottestC = 1 - zeroCelsiusK;
@@ -139,26 +134,18 @@ function sumDamage(
   }
   const fastest = -activation / (hottestC + zeroCelsiusK);
   let sum = 0;
-  let slope = 0;
-  let [earlier, earlierRate, earlierPerJ] = [0, 0, 0];
+  let [earlier, earlierRate] = [0, 0];
   for (let i = 0; i < count; i++) {
-    const rise = riseK === null ? 0 : riseK[i]!;
-    const kelvin = Math.max(baselineC[i]! + fluence * rise + zeroCelsiusK, 1);
-    const later = -activation / kelvin - fastest;
+    const rise = riseK === null ? 0 : fluence * riseK[i]!;
+    const later = -activation / Math.max(baselineC[i]! + rise + zeroCelsiusK, 1) - fastest;
     const laterRate = later < negligible ? 0 : Math.exp(later);
-    const laterPerJ = (laterRate * activation * rise) / (kelvin * kelvin);
     if (i > 0 && laterRate + earlierRate > 0) {
-      const durationS = timesS[i]! - timesS[i - 1]!;
       const span = later - earlier;
       const mean = Math.abs(span) < 1e-4 ? 0.5 * (earlierRate + laterRate) : (laterRate - earlierRate) / span;
-      sum += mean * durationS;
-      slope += (mean * durationS * (earlierPerJ + laterPerJ)) / (earlierRate + laterRate);
+      sum += mean * (timesS[i]! - timesS[i - 1]!);
     }
     earlier = later;
     earlierRate = laterRate;
-    earlierPerJ = laterPerJ;
   }
-  into.ln = Math.log(pair.frequencyFactorPerS) + fastest + Math.log(sum);
-  into.perJ = slope / sum;
-  return into;
+  return Math.log(pair.frequencyFactorPerS) + fastest + Math.log(sum);
 }
