@@ -48,11 +48,7 @@ const mostSteps = 1e6; // a photon caught in a layer that neither absorbs nor le
 export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons: number): Float64Array {
   const tally = new Float64Array(tallyLength(plan));
   const { topsCm, bottomsCm, interactionPerCm, absorbedShares, anisotropies, indices, layerCount } = plan;
-  const { binUppersCm, binLowersCm, deepestCm, depthCellsPerCm, firstBins } = plan;
-  const { ringRadiiCm, ringCellsPerCm, firstRings } = plan;
-  const rings = ringRadiiCm.length;
-  const widestCm = rings > 0 ? ringRadiiCm[rings - 1]! : 0;
-  const scoreStart = tallyPlaces.absorbed + layerCount;
+  const { binUppersCm, deepestCm, depthCellsPerCm, firstBins } = plan;
   const { scales, insideBelow, heights, tailStart } = ziggurat;
   const unit = 2 ** -32;
   const launched = 1 - plan.specularReflectance;
@@ -155,30 +151,17 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
         const upper = down ? z : after;
         if (upper < deepestCm) {
           const lower = down ? after : z;
-          for (let bin = firstBins[(upper * depthCellsPerCm) | 0]!; binUppersCm[bin]! < lower; bin++) {
-            const from = Math.max(upper, binUppersCm[bin]!);
-            const overlap = Math.min(lower, binLowersCm[bin]!) - from;
-            if (overlap > 0) {
-              state[0] = s0;
-              state[1] = s1;
-              state[2] = s2;
-              state[3] = s3;
-              const place = nextWord(state);
-              s0 = state[0]!;
-              s1 = state[1]!;
-              s2 = state[2]!;
-              s3 = state[3]!;
-              const part = (from + (place * unit + 0.5) * overlap - z) / (after - z);
-              const px = x + ux * length * part;
-              const py = y + uy * length * part;
-              const radius = Math.sqrt(px * px + py * py);
-              let ring = rings;
-              if (radius < widestCm) {
-                ring = firstRings[(radius * ringCellsPerCm) | 0]!;
-                while (radius >= ringRadiiCm[ring]!) ring++;
-              }
-              tally[scoreStart + bin * (rings + 1) + ring]! += (weight * length * overlap) / (lower - upper);
-            }
+          const bin = firstBins[(upper * depthCellsPerCm) | 0]!;
+          if (binUppersCm[bin]! < lower) {
+            state[0] = s0;
+            state[1] = s1;
+            state[2] = s2;
+            state[3] = s3;
+            scoreStep(plan, tally, state, bin, upper, lower, down, x, y, ux * length, uy * length, weight * length);
+            s0 = state[0]!;
+            s1 = state[1]!;
+            s2 = state[2]!;
+            s3 = state[3]!;
           }
         }
         x += ux * length;
@@ -309,4 +292,41 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
   tally[tallyPlaces.rouletteGain] = rouletteGain;
   tally[tallyPlaces.abandoned] = abandoned;
   return tally;
+}
+
+/** Adds the path of one step to the bins it crosses. Within a bin the whole path counts at a point drawn evenly along it, so that
+ *  each ring gets its share on average. `along` is the step's sideways reach, `pathWeight` its length times its weight. */
+function scoreStep(
+  plan: WalkPlan,
+  tally: Float64Array,
+  state: Int32Array,
+  firstBin: number,
+  upper: number,
+  lower: number,
+  down: boolean,
+  x: number,
+  y: number,
+  alongX: number,
+  alongY: number,
+  pathWeight: number,
+): void {
+  const { binUppersCm, binLowersCm, ringRadiiCm, ringCellsPerCm, firstRings } = plan;
+  const rings = ringRadiiCm.length;
+  for (let bin = firstBin; binUppersCm[bin]! < lower; bin++) {
+    const from = Math.max(upper, binUppersCm[bin]!);
+    const overlap = Math.min(lower, binLowersCm[bin]!) - from;
+    if (!(overlap > 0)) continue;
+    const below = (from + (nextWord(state) * 2 ** -32 + 0.5) * overlap - upper) / (lower - upper);
+    const part = down ? below : 1 - below;
+    const px = x + alongX * part;
+    const py = y + alongY * part;
+    const radius = Math.sqrt(px * px + py * py);
+    let ring = rings;
+    if (rings > 0 && radius < ringRadiiCm[rings - 1]!) {
+      ring = firstRings[(radius * ringCellsPerCm) | 0]!;
+      while (radius >= ringRadiiCm[ring]!) ring++;
+    }
+    const place = tallyPlaces.absorbed + plan.layerCount + bin * (rings + 1) + ring;
+    tally[place]! += (pathWeight * overlap) / (lower - upper);
+  }
 }
