@@ -1,3 +1,4 @@
+import { fc, test } from '@fast-check/vitest';
 import { describe, expect, it } from 'vitest';
 import {
   cem43Min,
@@ -119,4 +120,33 @@ describe('fluence for damage', () => {
     fluenceForDamage({ ...request, responseK: counted });
     expect((reads - 1) / 2).toBeLessThanOrEqual(6); // each sum reads twice, the search for the peak once
   });
+});
+
+describe('fluence for damage, any history', () => {
+  const history = fc.record({
+    riseK: fc.array(fc.double({ min: 0, max: 50, noNaN: true }), { minLength: 12, maxLength: 12 }),
+    baseC: fc.array(fc.double({ min: -30, max: 45, noNaN: true }), { minLength: 12, maxLength: 12 }),
+    lastS: fc.double({ min: 1e-8, max: 100, noNaN: true }),
+    pair: fc.constantFrom(henriques, vesselWall),
+  });
+
+  test.prop([history], { numRuns: 300 })(
+    'reaches the asked integral, or none up to the greatest fluence does',
+    ({ riseK, baseC, lastS, pair }) => {
+      const times = riseK.map((_, i) => (lastS * i) / 11);
+      const damageAt = (fluence: number) =>
+        damageIntegral(
+          times,
+          baseC.map((base, i) => base + fluence * riseK[i]!),
+          pair,
+        );
+      const fluence = fluenceForDamage({ timesS: times, baselineC: baseC, responseK: riseK, pair });
+      if (fluence === null) expect(damageAt(1000)).toBeLessThan(1.001);
+      else if (fluence === 0) expect(damageAt(0)).toBeGreaterThan(0.999);
+      else {
+        expect(damageAt(fluence * 1.001)).toBeGreaterThanOrEqual(1);
+        expect(damageAt(fluence * 0.999)).toBeLessThanOrEqual(1);
+      }
+    },
+  );
 });
