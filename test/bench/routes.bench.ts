@@ -16,6 +16,10 @@ const calculations = [
       asOf: '2026-03-01T09:00:00Z',
     },
   },
+  {
+    path: '/v1/calculations/exposure-limits',
+    body: { wavelengthNm: 1064, pulse: { durationS: 0.01 }, repetitionRateHz: 2, pulseCount: 20, asOf: '2026-03-01T09:00:00Z' },
+  },
   { path: '/v1/calculations/relaxation', body: { geometry: 'cylinder', sizeUm: 100, asOf: '2026-03-01T09:00:00Z' } },
 ];
 
