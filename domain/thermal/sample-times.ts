@@ -1,4 +1,4 @@
-import { type EmissionInterval, emissionEndS } from './emission.js';
+import type { EmissionInterval } from './emission.js';
 
 const pulseFractions = [0.02, 0.08, 0.2, 0.35, 0.5, 0.65, 0.78, 0.88, 0.95, 1];
 const manyIntervals = 8;
@@ -28,9 +28,4 @@ function tailTimesS(startS: number, endS: number, tailS: number, count: number):
   const firstS = Math.min(Math.max((endS - startS) / 50, 1e-9), tailS / 10);
   const ratio = (tailS / firstS) ** (1 / (count - 1));
   return Array.from({ length: count }, (_, i) => endS + firstS * ratio ** i);
-}
-
-/** Longest time in a list of samples for an emission with a tail. */
-export function lastSampleS(emission: readonly EmissionInterval[], tailS: number): number {
-  return emissionEndS(emission) + tailS;
 }
