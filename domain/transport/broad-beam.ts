@@ -2,7 +2,7 @@ import { bandedPosition, makeBanded, solveBanded } from '../numeric/banded.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
 import { type CollimatedBeam, collimatedBeam } from './collimated.js';
 import { fresnelReflectance } from './fresnel.js';
-import { type LayerModes, layerModes } from './layer-modes.js';
+import { type DepthModes, type LayerModes, layerModes } from './layer-modes.js';
 import { modeStates } from './mode-states.js';
 import { makeOrdinates, type Ordinates } from './ordinates.js';
 
@@ -37,9 +37,10 @@ export function solveBroadBeam(layers: readonly OpticalLayer[], perRegion: numbe
     size += 2 * mode.count;
   }
   const amplitudes = joinLayers(layers, ordinates, modes, beam, starts);
+  const alongDepth = modes.map(({ sums, differences, ...rest }): DepthModes => rest); // the rest need not be kept
 
   const evaluate = (layer: number, belowTopUm: number, wantFlux: boolean): number => {
-    const mode = modes[layer]!;
+    const mode = alongDepth[layer]!;
     const depth = Math.min(mode.extinctionPerUm * belowTopUm, mode.opticalThickness);
     const rest = Math.max(0, mode.opticalThickness - depth);
     const place = belowTopUm / layers[layer]!.thicknessUm;

@@ -5,14 +5,18 @@ import type { LayerOrdinates } from './ordinates.js';
 /** The radiance of one layer split into decoupled modes along depth, in delta-M scaled optical depth tau.
  *  With v' = -w + alpha, w' = -kappa^2 v + beta for each mode, radiance over 2 pi n^2 down and up the rays is
  *  (sums v +- differences w)/2. Shape of `sums`, `differences`: count x count, row = ray, column = mode. */
-export interface LayerModes {
+export interface LayerModes extends DepthModes {
+  readonly sums: Float64Array;
+  readonly differences: Float64Array;
+}
+
+/** What of a layer's modes is needed to follow them along depth once their amplitudes are known. */
+export interface DepthModes {
   readonly count: number;
   /** Scaled optical thickness, and scaled extinction per um. */
   readonly opticalThickness: number;
   readonly extinctionPerUm: number;
   readonly kappas: Float64Array;
-  readonly sums: Float64Array;
-  readonly differences: Float64Array;
   /** Fluence rate of a mode per v; net downward flux of a mode per w. */
   readonly fluenceFactors: Float64Array;
   readonly fluxFactors: Float64Array;

@@ -11,7 +11,7 @@ export interface LightFields {
   readonly size: number;
 }
 
-/** An empty store for at most `capacity` fields; a three-layer field takes about 30 kB. */
+/** An empty store for at most `capacity` fields; a three-layer field takes about 0.1 MB. */
 export function makeLightFields(capacity: number): LightFields {
   const fields = new Map<string, LightSolution>();
   let hitCount = 0;

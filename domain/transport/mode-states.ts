@@ -1,4 +1,4 @@
-import type { LayerModes } from './layer-modes.js';
+import type { DepthModes } from './layer-modes.js';
 
 let states = new Float64Array(0);
 
@@ -11,7 +11,7 @@ let states = new Float64Array(0);
  *  `depth` and `rest` are scaled optical distances to the faces, `place` the fraction of the layer above,
  *  `down` and `up` the beams' irradiances at the face where each starts. */
 export function modeStates(
-  modes: LayerModes,
+  modes: DepthModes,
   depth: number,
   rest: number,
   place: number,

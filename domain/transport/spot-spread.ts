@@ -33,17 +33,20 @@ export function solveSpotSpread(layers: readonly OpticalLayer[], degree: number)
     layers,
     scaled.map((layer) => layer.extinction * layer.thicknessCm),
   );
-  const solve = lateralSolver(harmonicsUpTo(degree), layers, scaled, beam);
-  const broad = solve(broadFrequency);
-  let solutions: readonly LateralSolution[] | undefined;
+  let solutions: { broad: LateralSolution; each: LateralSolution[] } | undefined;
   const tables = new WeakMap<SpreadPoints, Float64Array>();
   const width = frequencies.length + 1;
+
+  const solveFrequencies = () => {
+    const solve = lateralSolver(harmonicsUpTo(degree), layers, scaled, beam);
+    return { broad: solve(broadFrequency), each: Array.from(frequencies, solve) };
+  };
 
   /** Per point: fluence of the broad beam, then fluence at each frequency. */
   const tabulate = (points: SpreadPoints): Float64Array => {
     const kept = tables.get(points);
     if (kept) return kept;
-    solutions ??= Array.from(frequencies, solve);
+    solutions ??= solveFrequencies();
     const table = new Float64Array(width * points.layers.length);
     for (let i = 0; i < points.layers.length; i++) {
       const j = points.layers[i]!;
@@ -51,10 +54,10 @@ export function solveSpotSpread(layers: readonly OpticalLayer[], degree: number)
       const depth = points.belowTopsUm[i]! * 1e-4;
       const rest = Math.max(0, layer.thicknessCm - depth);
       const own = beam.down[j]! * Math.exp(-layer.extinction * depth) + beam.up[j]! * Math.exp(-layer.extinction * rest);
-      table[i * width] = own + scatteredFluence(broad, j, depth, rest, own);
+      table[i * width] = own + scatteredFluence(solutions.broad, j, depth, rest, own);
       for (let q = 0; q < frequencies.length; q++) {
         const narrowed = own * Math.exp(-peakLoss(scaled, degree, j, depth, frequencies[q]!));
-        table[i * width + 1 + q] = narrowed + scatteredFluence(solutions[q]!, j, depth, rest, own);
+        table[i * width + 1 + q] = narrowed + scatteredFluence(solutions.each[q]!, j, depth, rest, own);
       }
     }
     tables.set(points, table);

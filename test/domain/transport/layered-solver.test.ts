@@ -29,6 +29,30 @@ describe('light in layers under a spot', () => {
     for (const [i, f] of wide.entries()) expect(Math.abs(f / broad[i]! - 1)).toBeLessThan(1e-3);
   });
 
+  it('does not notice a layer cut into two of the same optics', () => {
+    const [top, middle, bottom] = skin as [(typeof skin)[0], (typeof skin)[0], (typeof skin)[0]];
+    const cut = solveLight([top, { ...middle, thicknessUm: 700 }, { ...middle, thicknessUm: 1100 }, bottom], {
+      accuracy: 'ranking',
+    });
+    const uncut = solveLight(skin, { accuracy: 'ranking' });
+    for (const diameterMm of [0.3, 1, 3, 10]) {
+      const [first, second] = [cut, uncut].map((light) =>
+        light.fluenceRatios({ shape: 'circle', diameterMm }, [40, 300, 779, 781, 1500]),
+      );
+      for (const [i, f] of first!.entries()) expect(Math.abs(f / second![i]! - 1)).toBeLessThan(3e-3);
+    }
+  });
+
+  it('gives the same answer whether asked for a spot at once or after others, at any depths', () => {
+    const spot = { shape: 'circle', diameterMm: 3 } as const;
+    const fresh = solveLight(skin, { accuracy: 'ranking' }).fluenceRatios(spot, [10, 500]);
+    const light = solveLight(skin, { accuracy: 'ranking' });
+    light.fluenceRatios({ shape: 'gaussian', diameterMm: 9 }, [10, 500]);
+    light.absorbedPerCm(spot, faces);
+    light.fluenceRatios(spot, [3]);
+    expect([...light.fluenceRatios(spot, [10, 500])]).toEqual([...fresh]);
+  });
+
   it('puts a square between its inscribed and circumscribed circles, near the circle of its area', () => {
     const light = solveLight(skin, { accuracy: 'ranking' });
     const at = (spot: Parameters<typeof light.fluenceRatios>[0]): number => light.fluenceRatios(spot, [1000])[0]!;
