@@ -1,4 +1,5 @@
 import type { OpticalLayer } from '../../../domain/tissue/optical-layer.js';
+import { reducedScatteringPerCm } from '../../../domain/tissue/scattering.js';
 import { fresnelMoments } from '../../../domain/transport/fresnel.js';
 import { type LightSolution, solveLight } from '../../../domain/transport/layered-solver.js';
 
@@ -10,6 +11,9 @@ interface Inputs {
   readonly absorptionPerCm: number;
   readonly reducedScatteringPerCm: number;
   readonly radiusCm: number;
+  readonly rayleighPerCm: number;
+  readonly miePerCm: number;
+  readonly wavelengthNm: number;
 }
 
 // Layers stand in the truth file as thickness in um, absorption and scattering per cm, anisotropy, index.
@@ -59,6 +63,13 @@ function diffusion({ absorptionPerCm, reducedScatteringPerCm, index, radiusCm }:
   };
 }
 
+// A law given at 1000 nm with Mie exponent 1, brought to the 500 nm of our own
+function reducedScattering({ rayleighPerCm, miePerCm, wavelengthNm }: Inputs): number {
+  const aPerCm = 16 * rayleighPerCm + 2 * miePerCm;
+  const law = { aPerCm, rayleighFraction: (16 * rayleighPerCm) / aPerCm, mieExponent: 1, fromNm: 400, toNm: 1300 };
+  return reducedScatteringPerCm({ ...law, spreadFactor: 1, source: 'Jacques 2008', status: 'read' }, wavelengthNm);
+}
+
 export const solvers: Record<string, (inputs: Inputs) => number> = {
   'total reflectance': totalReflectance,
   'diffuse reflectance': (inputs) => light(inputs).diffuseReflectance,
@@ -73,6 +84,7 @@ export const solvers: Record<string, (inputs: Inputs) => number> = {
   'diffusion flux': (inputs) => diffusion(inputs).flux,
   'diffusion fluence': (inputs) => diffusion(inputs).fluence,
   'diffusion reflectance': (inputs) => 0.118 * diffusion(inputs).fluence + 0.306 * diffusion(inputs).flux,
+  'reduced scattering': reducedScattering,
   'energy returned': (inputs) => totalReflectance(inputs) + light(inputs).transmittance,
   'energy balance': (inputs) => totalReflectance(inputs) + light(inputs).transmittance + light(inputs).absorbedFraction,
 };
