@@ -72,7 +72,7 @@ const usualDurationS = 1e-3; // scales the effective temperature only; any durat
 
 /** Fluence at which baseline + fluence x response reaches a damage integral: null when none up to the greatest does, 0 when the
  *  baseline alone does. The root is sought not in ln(integral) but in the effective temperature Ea / (R ln(A t / integral)), which is
- *  nearly linear in fluence, by secants that are kept inside a bracket. Relative accuracy 1e-6. */
+ *  nearly linear in fluence, by secants that are kept inside a bracket. Relative accuracy 1e-5. */
 export function fluenceForDamage(request: DamageFluenceRequest): number | null {
   const { timesS, baselineC, responseK, pair, target = 1, maxFluenceJPerCm2 = 1000 } = request;
   const activation = activationK(pair);
@@ -84,7 +84,8 @@ export function fluenceForDamage(request: DamageFluenceRequest): number | null {
   if (!(peakPerJ > 0)) return effectiveK(0) >= wantedK ? 0 : null;
   let low = 0;
   let high = maxFluenceJPerCm2;
-  let fluence = Math.min(high, Math.max(wantedK - zeroCelsiusK - greatest(baselineC), 1) / peakPerJ);
+  const guess = Math.max(wantedK - zeroCelsiusK - greatest(baselineC), 1) / peakPerJ;
+  let fluence = guess > 0.7 * high ? high : guess; // where the greatest may not suffice, ask that first
   let kPerJ = peakPerJ;
   for (let step = 0, before = 0, beforeK = 0; step < maxSteps; step++) {
     const reachedK = effectiveK(fluence);
@@ -92,11 +93,11 @@ export function fluenceForDamage(request: DamageFluenceRequest): number | null {
     else if (fluence === maxFluenceJPerCm2) return null;
     else low = fluence;
     if (step > 0) kPerJ = (reachedK - beforeK) / (fluence - before);
-    [before, beforeK] = [fluence, reachedK];
     const next = fluence + (wantedK - reachedK) / kPerJ;
     // A secant's error is about the product of the last two steps.
-    if ((step > 0 && Math.abs(next - fluence) <= 1e-4 * fluence) || high - low <= 1e-7 * high)
-      return Math.min(next, maxFluenceJPerCm2);
+    const isClose = step > 0 && Math.abs((next - fluence) * (fluence - before)) <= 4e-4 * fluence * fluence;
+    if (isClose || high - low <= 1e-7 * high) return Math.min(next, maxFluenceJPerCm2);
+    [before, beforeK] = [fluence, reachedK];
     if (next <= 0 && effectiveK(0) >= wantedK) return 0;
     if (next > low && next < high) fluence = next;
     else if (next >= high && high === maxFluenceJPerCm2) fluence = high;

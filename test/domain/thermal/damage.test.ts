@@ -73,7 +73,7 @@ describe('fluence for damage', () => {
         timesS.map((_, i) => request.baselineC[i]! + fluence * request.responseK[i]!),
         pair,
       );
-      expect(reached / target).toBeCloseTo(1, 4);
+      expect(reached / target).toBeCloseTo(1, 3);
     }
   });
 
@@ -106,7 +106,7 @@ describe('fluence for damage', () => {
       timesS.map((t, i) => -20 + 54 * Math.min(1, t) + fluence * late[i]!),
       henriques,
     );
-    expect(reached).toBeCloseTo(1, 4);
+    expect(reached).toBeCloseTo(1, 3);
   });
 
   it('needs about five sums over the samples', () => {
