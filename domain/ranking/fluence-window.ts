@@ -48,7 +48,10 @@ export function fluenceToReach(temperatureC: number, baselineC: Float64Array, ri
 
 /** A rise with `share` times another on top of it. */
 export function addRise(riseK: Float64Array, extraK: Float64Array | null, share: number): Float64Array {
-  return extraK && share !== 0 ? riseK.map((rise, i) => rise + share * extraK[i]!) : riseK;
+  if (!extraK || share === 0) return riseK;
+  const sum = new Float64Array(riseK.length);
+  for (let i = 0; i < sum.length; i++) sum[i] = riseK[i]! + share * extraK[i]!;
+  return sum;
 }
 
 /** The fluence window of one deposit under one pulse. `breakdownFluenceJPerCm2` is the fluence at which the irradiance of this pulse
