@@ -132,7 +132,7 @@ function carriedBack(
   const sums = new Float64Array(blockTimes);
   for (let mode = 0; mode < size; mode++) {
     fourDots(adjoint, matrix.subarray(mode * size, mode * size + live), 0, live, sums);
-    result.set(sums, blockTimes * mode);
+    for (let i = 0; i < blockTimes; i++) result[blockTimes * mode + i] = sums[i]!;
   }
   return result;
 }
