@@ -32,3 +32,14 @@ export function exponentialZiggurat(): ExponentialZiggurat {
   heights[strips] = 1;
   return { scales, insideBelow, heights, tailStart };
 }
+
+/** The circle in 256 sectors: cosine and sine of each sector's middle, and the angle that one unit of a 24-bit integer turns. */
+export function azimuthSectors(): { readonly cosines: Float64Array; readonly sines: Float64Array; readonly turnUnit: number } {
+  const middle = (_: unknown, i: number) => (2 * Math.PI * i) / 256;
+  const angles = Array.from({ length: 256 }, middle);
+  return {
+    cosines: Float64Array.from(angles, Math.cos),
+    sines: Float64Array.from(angles, Math.sin),
+    turnUnit: (2 * Math.PI) / 2 ** 32,
+  };
+}

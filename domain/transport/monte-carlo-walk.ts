@@ -1,6 +1,6 @@
 import { nextWord, streamState } from '../numeric/random.js';
 import { fresnelReflectance } from './fresnel.js';
-import { exponentialZiggurat } from './monte-carlo-tables.js';
+import { azimuthSectors, exponentialZiggurat } from './monte-carlo-tables.js';
 
 /** Layers and score places as flat arrays, in cm; built by `planRun`. Index runs over layers or, where named so, over score bins. */
 export interface WalkPlan {
@@ -34,6 +34,8 @@ export function tallyLength(plan: WalkPlan): number {
 }
 
 const ziggurat = exponentialZiggurat();
+const { cosines, sines, turnUnit } = azimuthSectors();
+
 const rouletteBelow = 1e-3; // weight under which one photon in ten goes on; unbiased for any value
 const rouletteFactor = 10;
 const mostSteps = 1e6; // a photon caught in a layer that neither absorbs nor lets go; its weight is tallied as abandoned
@@ -44,7 +46,7 @@ const mostSteps = 1e6; // a photon caught in a layer that neither absorbs nor le
  *  Steps between events are exponential in optical depth; absorption lowers the weight at each event; scattering is
  *  Henyey-Greenstein; at a boundary the whole photon is reflected or refracted by the Fresnel probability.
  *  The sum of reflectance, transmittance, absorption, abandoned weight less roulette gain equals the weight launched, to rounding.
- *  @source Wang1995 sections 3.2 to 3.9 (walk); Marsaglia2000 (step); Neumann1951 (azimuth); Duff2017 (turn) */
+ *  @source Wang1995 sections 3.2 to 3.9 (walk); Marsaglia2000 (step); Duff2017 (turn) */
 export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons: number): Float64Array {
   const tally = new Float64Array(tallyLength(plan));
   const { topsCm, bottomsCm, interactionPerCm, absorbedShares, anisotropies, indices, layerCount } = plan;
@@ -142,22 +144,21 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
         }
         let length = depth * freePathCm;
         let after = z + uz * length;
-        const down = uz > 0;
-        const leaves = down ? after >= bottomCm : after < topCm;
+        const leaves = after >= bottomCm || after < topCm;
         if (leaves) {
-          after = down ? bottomCm : topCm;
-          length = (after - z) / uz;
+          after = uz > 0 ? bottomCm : topCm;
+          length = uz === 0 ? 0 : (after - z) / uz;
         }
-        const upper = down ? z : after;
+        const upper = Math.min(z, after);
         if (upper < deepestCm) {
-          const lower = down ? after : z;
+          const lower = Math.max(z, after);
           const bin = firstBins[(upper * depthCellsPerCm) | 0]!;
           if (binUppersCm[bin]! < lower) {
             state[0] = s0;
             state[1] = s1;
             state[2] = s2;
             state[3] = s3;
-            scoreStep(plan, tally, state, bin, upper, lower, down, x, y, ux * length, uy * length, weight * length);
+            scoreStep(plan, tally, state, bin, upper, lower, uz > 0, x, y, ux * length, uy * length, weight * length);
             s0 = state[0]!;
             s1 = state[1]!;
             s2 = state[2]!;
@@ -174,6 +175,7 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
           break walk;
         }
         depth = Math.max(0, depth - length / freePathCm);
+        const down = uz > 0;
         const next = down ? layer + 1 : layer - 1;
         const fromIndex = indices[layer + 1]!;
         const toIndex = indices[next + 1]!;
@@ -254,10 +256,9 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
           cosine = (hgSum - term * term) * hgScale;
         }
       }
-      let a: number; // a point in the disk of radius 2^15: its direction is the azimuth
+      let a: number; // the azimuth: the middle of a sector turned by an angle within it, by series good to 3e-12
       let b: number;
-      let square: number;
-      do {
+      {
         const shifted = s1 << 9;
         const sum = (s0 + s3) | 0;
         const word = (((sum << 7) | (sum >>> 25)) + s0) | 0;
@@ -268,14 +269,15 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
         s2 ^= shifted;
         s3 = (s3 << 11) | (s3 >>> 21);
 
-        a = (word >> 16) + 0.5;
-        b = ((word << 16) >> 16) + 0.5;
-        square = a * a + b * b;
-      } while (square > 2 ** 30);
-      const sine2 = 1 - cosine * cosine;
-      const turn = sine2 > 0 ? Math.sqrt(sine2 / square) : 0;
-      a *= turn;
-      b *= turn;
+        const sector = word & 255;
+        const turn = ((word >>> 8) + 0.5 - 2 ** 23) * turnUnit;
+        const square = turn * turn;
+        const sinTurn = turn * (1 - square / 6);
+        const cosTurn = 1 - square * (0.5 - square / 24);
+        const sine = Math.sqrt(Math.max(0, 1 - cosine * cosine));
+        a = sine * (cosines[sector]! * cosTurn - sines[sector]! * sinTurn);
+        b = sine * (sines[sector]! * cosTurn + cosines[sector]! * sinTurn);
+      }
       const sign = uz >= 0 ? 1 : -1;
       const p = -1 / (sign + uz);
       const q = ux * uy * p;

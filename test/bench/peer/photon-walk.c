@@ -24,6 +24,7 @@ typedef struct {
   double reflected, transmitted, roulette_gain, abandoned, absorbed[1], score[BINS * (RINGS + 1)];
 } tally_t;
 
+static double cosines[256], sines[256];
 static double scales[256], heights[257];
 static int32_t inside_below[256];
 static const double tail_start = 7.69711747013104972;
@@ -40,6 +41,10 @@ static void make_ziggurat(void) {
     heights[i] = exp(-edges[i]);
   }
   heights[256] = 1;
+  for (int i = 0; i < 256; i++) {
+    cosines[i] = cos(2 * M_PI * i / 256);
+    sines[i] = sin(2 * M_PI * i / 256);
+  }
 }
 
 static inline uint32_t rotl(uint32_t x, int k) { return (x << k) | (x >> (32 - k)); }
@@ -64,7 +69,7 @@ static double fresnel(double from, double to, double cosine) {
 }
 
 static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tally_t *tally) {
-  const double unit = 1.0 / 4294967296.0;
+  const double unit = 1.0 / 4294967296.0, turn_unit = 2 * M_PI / 4294967296.0;
   uint32_t random[4];
   memcpy(random, seed, sizeof random);
   const double widest = plan->ring_radius[RINGS - 1];
@@ -105,14 +110,14 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
           scale = 0.5 / g;
         }
         double length = depth * free_path, after = z + uz * length;
-        int down = uz > 0, leaves = down ? after >= bottom : after < top;
+        int leaves = after >= bottom || after < top;
         if (leaves) {
-          after = down ? bottom : top;
-          length = (after - z) / uz;
+          after = uz > 0 ? bottom : top;
+          length = uz == 0 ? 0 : (after - z) / uz;
         }
-        double upper = down ? z : after;
+        double upper = fmin(z, after);
         if (upper < plan->deepest) {
-          double lower = down ? after : z;
+          double lower = fmax(z, after);
           for (int bin = plan->first_bin[(int)(upper * plan->depth_cells_per_cm)]; plan->bin_upper[bin] < lower; bin++) {
             double from = upper > plan->bin_upper[bin] ? upper : plan->bin_upper[bin];
             double overlap = (lower < plan->bin_lower[bin] ? lower : plan->bin_lower[bin]) - from;
@@ -137,7 +142,7 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
           goto done;
         }
         depth = fmax(0, depth - length / free_path);
-        int next = down ? layer + 1 : layer - 1;
+        int down = uz > 0, next = down ? layer + 1 : layer - 1;
         double from_index = plan->index[layer + 1], to_index = plan->index[next + 1];
         if (from_index != to_index) {
           if (next_word(random) * unit + 0.5 < fresnel(from_index, to_index, down ? uz : -uz)) {
@@ -183,16 +188,17 @@ static void walk_photons(const plan_t *plan, uint32_t seed[4], long photons, tal
         double term = over / (under + slope * draw);
         cosine = (sum - term * term) * scale;
       }
-      double a, b, square;
-      do {
+      double a, b;
+      {
         int32_t word = next_word(random);
-        a = (word >> 16) + 0.5;
-        b = (int16_t)word + 0.5;
-        square = a * a + b * b;
-      } while (square > 1073741824.0);
-      double sine2 = 1 - cosine * cosine, turn = sine2 > 0 ? sqrt(sine2 / square) : 0;
-      a *= turn;
-      b *= turn;
+        int sector = word & 255;
+        double turn = ((double)(int32_t)((uint32_t)word >> 8) + 0.5 - 8388608) * turn_unit, square = turn * turn;
+        double sin_turn = turn * (1 - square / 6);
+        double cos_turn = 1 - square * (0.5 - square / 24);
+        double sine = sqrt(fmax(0, 1 - cosine * cosine));
+        a = sine * (cosines[sector] * cos_turn - sines[sector] * sin_turn);
+        b = sine * (sines[sector] * cos_turn + cosines[sector] * sin_turn);
+      }
       double sign = uz >= 0 ? 1 : -1, p = -1 / (sign + uz), q = ux * uy * p;
       double nx = a * (1 + sign * ux * ux * p) + b * q + cosine * ux;
       double ny = a * sign * q + b * (sign + uy * uy * p) + cosine * uy;
