@@ -1,6 +1,7 @@
 import type { Spot } from '../beam/spot.js';
 import { gaussLegendre } from '../numeric/quadrature.js';
 import { besselJ0 } from '../numeric/special.js';
+import { assertWithin, DomainError } from '../quantities/errors.js';
 
 /** A round beam known by its measured irradiance, relative to the axis, at ascending radii; zero beyond the last. */
 export interface MeasuredProfile {
@@ -11,6 +12,41 @@ export interface MeasuredProfile {
 
 /** Every cross-section that light transport can follow. */
 export type BeamProfile = Spot | MeasuredProfile;
+
+/** Refuses a beam without a size. Throws: out-of-range; contradiction for a measured table that does not start on the axis at 1,
+ *  does not ascend, or has columns of unlike length. */
+export function checkBeam(profile: BeamProfile): void {
+  if (profile.shape === 'measured') {
+    const { radiiMm, relativeIrradiances } = profile;
+    const ascends = radiiMm.every((radius, i) => (i === 0 ? radius === 0 : radius > radiiMm[i - 1]!));
+    if (radiiMm.length < 2 || radiiMm.length !== relativeIrradiances.length || !ascends || relativeIrradiances[0] !== 1) {
+      const fields = ['radiiMm', 'relativeIrradiances'];
+      throw new DomainError(
+        'contradiction',
+        'a measured beam starts on its axis at relative irradiance 1 and ascends in radius',
+        {
+          fields,
+        },
+      );
+    }
+    for (const irradiance of relativeIrradiances) assertWithin('relative irradiance', irradiance, 0, 1e3);
+  }
+  for (const sizeMm of sizesMm(profile)) assertWithin('spot size in mm', sizeMm, 1e-3, 1e3); // a wavelength to a meter
+}
+
+function sizesMm(profile: BeamProfile): number[] {
+  switch (profile.shape) {
+    case 'circle':
+    case 'gaussian':
+      return [profile.diameterMm];
+    case 'square':
+      return [profile.widthMm];
+    case 'rectangle':
+      return [profile.widthMm, profile.heightMm];
+    case 'measured':
+      return [profile.radiiMm[profile.radiiMm.length - 1]!];
+  }
+}
 
 /** How a beam's irradiance is spread over spatial frequency, as its center sees it. */
 export interface BeamTransform {

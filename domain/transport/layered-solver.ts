@@ -1,6 +1,6 @@
 import { assertWithin, DomainError } from '../quantities/errors.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
-import { type BeamProfile, flatWidthMm } from './beam-profile.js';
+import { type BeamProfile, checkBeam, flatWidthMm } from './beam-profile.js';
 import { solveBroadBeam } from './broad-beam.js';
 import { type SpotSpread, type SpreadPoints, solveSpotSpread } from './spot-spread.js';
 
@@ -17,11 +17,11 @@ export interface LightSolution {
   readonly transmittance: number;
   readonly absorbedFraction: number;
   /** Fluence rate on the beam axis at each depth over the incident irradiance on the axis.
-   *  Throws: out-of-range for a depth outside the stack. */
+   *  Throws: out-of-range for a depth outside the stack; as `checkBeam`. */
   fluenceRatios(spot: BeamProfile | null, depthsUm: ArrayLike<number>): Float64Array;
   /** Mean over each cell between consecutive ascending faces of absorbed power per volume on the axis, over the incident
    *  irradiance there, per cm. Exact in energy for the broad beam. Shape: one fewer than faces.
-   *  Throws: out-of-range for a face outside the stack or faces that do not ascend. */
+   *  Throws: out-of-range for a face outside the stack or faces that do not ascend; as `checkBeam`. */
   absorbedPerCm(spot: BeamProfile | null, facesUm: ArrayLike<number>): Float64Array;
   /** Depth at which fluence on the axis has fallen to 1/e of its greatest value; null when it does not within the stack. */
   penetrationDepthMm(spot: BeamProfile | null): number | null;
@@ -63,6 +63,7 @@ export function solveLight(layers: readonly OpticalLayer[], options: LightOption
   };
   const spreadBy = (spot: BeamProfile | null, points: SpreadPoints, broadValues: Float64Array): Float64Array => {
     if (spot === null) return broadValues.slice();
+    checkBeam(spot);
     const degree = options.accuracy === 'fine' ? 7 : degreeFor(flatWidthMm(spot));
     const spread = spreads.get(degree) ?? solveSpotSpread(layers, degree);
     spreads.set(degree, spread);
@@ -117,8 +118,10 @@ export function solveLight(layers: readonly OpticalLayer[], options: LightOption
     }
     return null;
   };
-  const { specularReflectance, diffuseReflectance, transmittance } = broad;
-  const absorbedFraction = 1 - specularReflectance - diffuseReflectance - transmittance;
+  const { specularReflectance } = broad;
+  const diffuseReflectance = Math.max(0, broad.diffuseReflectance);
+  const transmittance = Math.max(0, broad.transmittance);
+  const absorbedFraction = Math.max(0, 1 - specularReflectance - diffuseReflectance - transmittance);
   return {
     specularReflectance,
     diffuseReflectance,

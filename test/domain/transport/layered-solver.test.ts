@@ -150,5 +150,16 @@ describe('light in layers under a spot', () => {
     expect(() => light.fluenceRatios(null, [101])).toThrow(/depth/);
     expect(() => light.absorbedPerCm(null, [0, 50, 50])).toThrow(/ascend/);
     expect([...light.absorbedPerCm(null, [])]).toEqual([]);
+    const beams = [
+      { shape: 'circle', diameterMm: 0 },
+      { shape: 'gaussian', diameterMm: Number.NaN },
+      { shape: 'square', widthMm: -1 },
+      { shape: 'rectangle', widthMm: 1, heightMm: 0 },
+      { shape: 'measured', radiiMm: [0, 1], relativeIrradiances: [0.9, 0] },
+      { shape: 'measured', radiiMm: [0, 1, 1], relativeIrradiances: [1, 1, 0] },
+      { shape: 'measured', radiiMm: [0, 1], relativeIrradiances: [1] },
+      { shape: 'measured', radiiMm: [0, 1], relativeIrradiances: [1, -1] },
+    ] as const;
+    for (const beam of beams) expect(() => light.fluenceRatios(beam, [1])).toThrow(DomainError);
   });
 });
