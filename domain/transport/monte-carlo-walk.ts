@@ -29,7 +29,8 @@ export interface WalkPlan {
 /** Places in a chunk's tally before the per-layer absorption and the scores of `ring + (rings + 1) * bin`. */
 export const tallyPlaces = { diffuseReflectance: 0, transmittance: 1, rouletteGain: 2, abandoned: 3, absorbed: 4 } as const;
 
-export function tallyLength(plan: WalkPlan): number {
+/** Length of a chunk's tally. */
+function tallyLength(plan: WalkPlan): number {
   return tallyPlaces.absorbed + plan.layerCount + (plan.binUppersCm.length - 1) * (plan.ringRadiiCm.length + 1);
 }
 

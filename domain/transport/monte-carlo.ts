@@ -40,6 +40,7 @@ export interface RunAnswer {
   readonly balanceError: number;
 }
 
+/** A mean over chunks with its standard error. */
 export interface Estimate {
   readonly value: number;
   readonly standardError: number;
@@ -51,8 +52,8 @@ const clearPerCm = 1e-9; // interaction given to a layer without any, so that ev
 
 /** Prepares a run. Light arrives down the axis from air (index 1); below the last layer is air too.
  *  Score slices are thin against the distance over which fluence changes (0.03 of the diffusion length either way, at most 25 um;
- *  5e-4 of a mean free path where a layer's edge is nearer, since fluence is steepest there), so that averaging over them costs
- *  less than 0.1 %.
+ *  0.05 of a free path while much light is still unscattered, and 5e-4 of one where a layer's edge is nearer, since fluence is
+ *  steepest there), so that averaging over them costs less than 0.1 %.
  *  Throws: out-of-range for a faulty layer, more than 32 layers, 64 depths or 16 beams, or a depth outside the stack. */
 export function planRun(question: RunQuestion): RunPlan {
   const { layers, beams, depthsUm } = question;
@@ -135,7 +136,10 @@ function scoreSlice(depth: number, layers: readonly OpticalLayer[], tops: readon
     const reduced = layer.absorptionPerCm + layer.scatteringPerCm * (1 - layer.anisotropy);
     return 0.03 / Math.max(1, Math.sqrt(3 * layer.absorptionPerCm * reduced), 0.3 * layer.absorptionPerCm, 0.3 * reduced);
   };
-  const coarse = Math.min(reach(layers[at]!), 25e-4, layers[at]!.thicknessUm * 1e-4 * 0.25);
+  let events = 0; // optical depth, which says how much light has not met anything yet
+  for (let i = 0; i <= at; i++) events += (Math.min(depth, bottoms[i]!) - tops[i]!) * eventsPerCm(layers[i]!);
+  const unmet = (0.05 * Math.exp(Math.min(20, events / 2))) / Math.max(1, eventsPerCm(layers[at]!));
+  const coarse = Math.min(reach(layers[at]!), unmet, 25e-4, layers[at]!.thicknessUm * 1e-4 * 0.25);
   const mostEvents = Math.max(...[at, at + 1].map((i) => eventsPerCm(layers[Math.min(last, i)]!)));
   const fine = Math.min(coarse / 10, 5e-4 / Math.max(1, mostEvents));
   const half = Math.max(fine, Math.min(coarse, depth - tops[at]!, bottoms[at]! - depth));

@@ -10,6 +10,7 @@ export interface Tally {
   readonly scatters: Float64Array;
 }
 
+/** A tally before the first chunk. */
 export function emptyTally(figures: number): Tally {
   return { chunks: 0, means: new Float64Array(figures), scatters: new Float64Array(figures) };
 }
