@@ -174,6 +174,20 @@ describe('reference runs', () => {
     expect({ ...resumed.result, elapsedS: 0 }).toEqual({ ...straight.result, elapsedS: 0 });
   });
 
+  it('need a key, take an Idempotency-Key, show a version, and know no other query parameters', async () => {
+    const { app, as, start, read } = await openService('manners.sqlite');
+    await request(app.server).post('/v1/reference-runs').send(quick).expect(401);
+    const first = await start(quick).set('idempotency-key', 'one').expect(202);
+    const again = await start(quick).set('idempotency-key', 'one').expect(202);
+    expect(again.body.item.id).toBe(first.body.item.id);
+    await start({ ...quick, seed: 5 })
+      .set('idempotency-key', 'one')
+      .expect(422);
+    expect((await read(first.body.item.id)).headers.etag).toBeDefined();
+    await request(app.server).get('/v1/reference-runs?state=done').set(as('north')).expect(400);
+    await read('no-such-run').expect(404);
+  });
+
   it('refuse what cannot be run, every fault at once', async () => {
     const { start } = await openService('refuse.sqlite');
     const faults = async (body: object) =>
