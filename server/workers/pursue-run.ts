@@ -21,6 +21,10 @@ export interface RunState {
 }
 
 const leastChunks = 50; // below, the standard error itself is known to worse than 10 %
+const leastChunksInTime = 10; // to 24 %: poor, but the time is up
+
+/** The time was up before there was an answer with an error to state; its message is for the user. */
+export class OutOfTimeError extends Error {}
 
 /** Walks chunks on the pool and adds them by number, so that the sum does not depend on the number of threads.
  *  Goes on from `start`; `onChunk` sees each state in order. Rejects when aborted, leaving the last state seen valid. */
@@ -50,11 +54,15 @@ export async function pursueRun(
   const stoppedBy = (): StopReason | null => {
     const { chunks } = state.tally;
     if (chunks >= order.chunkLimit) return 'photons';
-    if (chunks < leastChunks) return null;
-    if (order.standardErrorTarget !== null && worstRelativeError(plan, state.tally) <= order.standardErrorTarget) {
+    const { standardErrorTarget, maxSeconds } = order;
+    if (standardErrorTarget !== null && chunks >= leastChunks && worstRelativeError(plan, state.tally) <= standardErrorTarget) {
       return 'standard-error';
     }
-    return state.elapsedS >= order.maxSeconds ? 'time' : null;
+    if (state.elapsedS < maxSeconds) return null;
+    if (chunks >= leastChunksInTime) return 'time';
+    throw new OutOfTimeError(
+      `Only ${chunks * order.photonsPerChunk} photons could be followed in ${maxSeconds} s, too few to state an error; raise maxSeconds or take less scattering layers.`,
+    );
   };
   try {
     for (;;) {

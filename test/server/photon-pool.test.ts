@@ -57,9 +57,14 @@ describe('photon runs on worker threads', () => {
     expect(progressFraction(loose, states.at(-1)!)).toBe(1);
   });
 
-  it('stop by time, but not before there is an error to state', async () => {
-    const { state, stoppedBy } = await pursueRun({ ...order, maxSeconds: 0, chunkLimit: 1000 }, null, two, never, () => {});
-    expect(stoppedBy).toBe('time');
-    expect(state.tally.chunks).toBe(50);
+  it('stop by time with ten chunks or more, and say so when there is too little to state an error', async () => {
+    const short = { ...order, chunkLimit: 1000, maxSeconds: 50 };
+    const seen: RunState[] = [];
+    await pursueRun({ ...order, chunkLimit: 12 }, null, one, never, (state) => seen.push(state));
+    const late = (chunks: number): RunState => ({ ...seen[chunks - 1]!, elapsedS: 60 });
+    const { state, stoppedBy } = await pursueRun(short, late(10), two, never, () => {});
+    expect([stoppedBy, state.tally.chunks]).toEqual(['time', 10]);
+    await expect(pursueRun(short, late(9), two, never, () => {})).rejects.toThrow(/Only 900 photons could be followed in 50 s/);
   });
+});
 });

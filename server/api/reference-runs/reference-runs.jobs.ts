@@ -2,7 +2,7 @@ import { answerRun, planRun } from '../../../domain/transport/monte-carlo.js';
 import type { Db } from '../../db/database.js';
 import type { JobQueue } from '../../jobs/job-queue.js';
 import type { PhotonPool } from '../../workers/pool.js';
-import { progressFraction, pursueRun } from '../../workers/pursue-run.js';
+import { OutOfTimeError, progressFraction, pursueRun } from '../../workers/pursue-run.js';
 import { presentAnswer, type RunPlanRecord } from './reference-runs.present.js';
 import { endRun, forgetRunState, saveRunState, takeRun, unfinishedRunIds } from './reference-runs.store.js';
 
@@ -49,8 +49,9 @@ export async function workOnRun({ db, now, pool, reportFailure }: RunParts, id: 
         keep();
         return;
       }
-      reportFailure(id, error);
-      const failure = 'The run broke off inside; the log has the reason. Send the request again.';
+      const ranOut = error instanceof OutOfTimeError;
+      if (!ranOut) reportFailure(id, error);
+      const failure = ranOut ? error.message : 'The run broke off inside; the log has the reason. Send the request again.';
       endRun(db, id, { status: 'failed', finishedAt: now().toISOString(), failure });
     } catch (storing) {
       reportFailure(id, storing);
