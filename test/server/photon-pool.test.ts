@@ -67,4 +67,3 @@ describe('photon runs on worker threads', () => {
     await expect(pursueRun(short, late(9), two, never, () => {})).rejects.toThrow(/Only 900 photons could be followed in 50 s/);
   });
 });
-});
