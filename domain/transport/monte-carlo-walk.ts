@@ -39,6 +39,7 @@ const { cosines, sines, turnUnit } = azimuthSectors();
 
 const rouletteBelow = 1e-3; // weight under which one photon in ten goes on; unbiased for any value
 const rouletteFactor = 10;
+const isotropicBelow = 1e-6; // anisotropy that the inverted distribution cannot tell from none
 const mostSteps = 1e6; // a photon caught in a layer that neither absorbs nor lets go; its weight is tallied as abandoned
 
 /** Walks one chunk of photons of a pencil beam down the axis and adds up what happens to them.
@@ -136,7 +137,7 @@ export function walkPhotons(plan: WalkPlan, seed: number, chunk: number, photons
           bottomCm = bottomsCm[layer]!;
           freePathCm = 1 / interactionPerCm[layer]!;
           absorbedShare = absorbedShares[layer]!;
-          g = anisotropies[layer]!;
+          g = Math.abs(anisotropies[layer]!) < isotropicBelow ? 0 : anisotropies[layer]!;
           hgOver = 1 - g * g;
           hgUnder = 1 - g;
           hgSlope = 2 * g;
