@@ -53,3 +53,40 @@ export function faceCondition(harmonics: Harmonics, ownIndex: number, beyondInde
   }
   return { own, beyond };
 }
+
+/** Condition at a face beyond which nothing scatters: what leaves is what `reflectance` sends back. `edges` are the values of
+ *  n sin(theta) at which it has a kink. Shape and weights as in `faceCondition`. */
+export function outerCondition(
+  harmonics: Harmonics,
+  ownIndex: number,
+  edges: readonly number[],
+  reflectance: (invariant: number) => number,
+  downward: boolean,
+): Float64Array {
+  const { count, modeCount, oddPositions, reflectionSigns, testedPositions } = harmonics;
+  const own = new Float64Array(modeCount * count);
+  const values = new Float64Array(count);
+  const cuts = [0, ...edges.filter((edge) => edge < ownIndex).sort((a, b) => a - b), ownIndex];
+  const { nodes, weights } = gaussLegendre(24);
+  for (let piece = 0; piece + 1 < cuts.length; piece++) {
+    // the cosine in a medium whose critical angle ends the piece is the smooth variable
+    const greatest = Math.sqrt(1 - (cuts[piece]! / cuts[piece + 1]!) ** 2);
+    for (const [q, node] of nodes.entries()) {
+      const cosine = (greatest * (1 + node)) / 2;
+      const invariant = cuts[piece + 1]! * Math.sqrt(1 - cosine * cosine);
+      const mu = Math.sqrt(Math.max(0, 1 - (invariant / ownIndex) ** 2));
+      const step = ((cuts[piece + 1]! / ownIndex) ** 2 * cosine * greatest * weights[q]!) / (2 * Math.max(mu, 1e-9));
+      const back = reflectance(invariant);
+      harmonicsAt(harmonics, mu, values);
+      for (let row = 0; row < modeCount; row++) {
+        const weight = step * values[oddPositions[row]!]!;
+        for (const i of testedPositions[row]!) {
+          const leaving = downward ? 1 : reflectionSigns[i]!;
+          const arriving = downward ? reflectionSigns[i]! : 1;
+          own[row * count + i]! += weight * values[i]! * (leaving - back * arriving);
+        }
+      }
+    }
+  }
+  return own;
+}

@@ -1,7 +1,7 @@
 import { type BandedMatrix, bandedPosition, makeBanded, solveBanded } from '../numeric/banded.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
-import type { CollimatedBeam } from './collimated.js';
-import { faceCondition } from './harmonic-faces.js';
+import { outsideReflectance } from './clear-layers.js';
+import { faceCondition, outerCondition } from './harmonic-faces.js';
 import { type HarmonicModes, modeSolver, type ScaledLayer } from './harmonic-modes.js';
 import type { Harmonics } from './harmonics.js';
 
@@ -15,43 +15,49 @@ export interface LateralSolution {
   readonly beamFluences: Float64Array;
 }
 
-/** Prepares layers for any number of lateral frequencies: the faces' conditions do not depend on them.
+/** The part of a stack that scatters, between clear layers listed outward from it. */
+export interface ScatteringPart {
+  readonly layers: readonly OpticalLayer[];
+  readonly scaled: readonly ScaledLayer[];
+  readonly above: readonly OpticalLayer[];
+  readonly below: readonly OpticalLayer[];
+  /** Irradiances of the beam at the top (downward) and bottom (upward) of each scattering layer. */
+  readonly beamDown: Float64Array;
+  readonly beamUp: Float64Array;
+}
+
+/** Prepares a stack for any number of lateral frequencies: conditions at inner faces do not depend on them.
  *  @source Davison1957 (method of spherical harmonics); Liemert2012 (Hankel transform of the lateral plane) */
-export function lateralSolver(
-  harmonics: Harmonics,
-  layers: readonly OpticalLayer[],
-  scaled: readonly ScaledLayer[],
-  beam: CollimatedBeam,
-): (k: number) => LateralSolution {
-  const faces = layers.map((layer, j) => {
-    const above = layers[j - 1]?.refractiveIndex ?? 1;
-    const below = layers[j + 1]?.refractiveIndex ?? 1;
-    return {
-      top: faceCondition(harmonics, layer.refractiveIndex, above, true),
-      bottom: faceCondition(harmonics, layer.refractiveIndex, below, false),
-    };
-  });
+export function lateralSolver(harmonics: Harmonics, part: ScatteringPart): (k: number) => LateralSolution {
+  const { layers, scaled } = part;
+  const last = layers.length - 1;
+  const inner = layers.slice(0, last).map((layer, j) => ({
+    upper: faceCondition(harmonics, layer.refractiveIndex, layers[j + 1]!.refractiveIndex, false),
+    lower: faceCondition(harmonics, layers[j + 1]!.refractiveIndex, layer.refractiveIndex, true),
+  }));
+  const top = outerFace(harmonics, layers[0]!, part.above, true);
+  const bottom = outerFace(harmonics, layers[last]!, part.below, false);
   const solvers = scaled.map((layer) => modeSolver(harmonics, layer));
   const { count, modeCount } = harmonics;
   const size = 2 * modeCount * layers.length;
   const band = Math.min(size - 1, 3 * modeCount - 1);
   const matrix = makeBanded(size, band, band);
-  const last = layers.length - 1;
 
   return (k) => {
     const modes = solvers.map((solver) => solver(k));
     const right = new Float64Array(size);
     matrix.values.fill(0);
     const add = (row: number, moments: Float64Array, j: number, atTop: boolean): void =>
-      addFace(harmonics, matrix, right, row, moments, scaled[j]!, modes[j]!, beam, j, atTop);
-    for (let j = 0; j <= last; j++) {
-      const topRow = 2 * modeCount * j;
-      const bottomRow = topRow + modeCount;
-      add(topRow, faces[j]!.top.own, j, true);
-      if (j > 0) add(topRow, faces[j]!.top.beyond, j - 1, false);
-      add(bottomRow, faces[j]!.bottom.own, j, false);
-      if (j < last) add(bottomRow, faces[j]!.bottom.beyond, j + 1, true);
+      addFace(harmonics, matrix, right, row, moments, scaled[j]!, modes[j]!, part.beamDown[j]!, part.beamUp[j]!, j, atTop);
+    add(0, top(k), 0, true);
+    for (let j = 0; j < last; j++) {
+      const row = modeCount * (2 * j + 1);
+      add(row, inner[j]!.upper.own, j, false);
+      add(row, inner[j]!.upper.beyond, j + 1, true);
+      add(row + modeCount, inner[j]!.lower.own, j + 1, true);
+      add(row + modeCount, inner[j]!.lower.beyond, j, false);
     }
+    add(size - modeCount, bottom(k), last, false);
     solveBanded(matrix, right);
     const solution: LateralSolution = {
       modeCount,
@@ -75,6 +81,22 @@ export function lateralSolver(
   };
 }
 
+/** Condition at an outermost face by frequency; worked out once where the face borders on air. */
+function outerFace(
+  harmonics: Harmonics,
+  layer: OpticalLayer,
+  outward: readonly OpticalLayer[],
+  downward: boolean,
+): (k: number) => Float64Array {
+  const index = layer.refractiveIndex;
+  const edges = [1, ...outward.map((clear) => clear.refractiveIndex)].filter((edge, i, all) => all.indexOf(edge) === i);
+  const at = (k: number): Float64Array =>
+    outerCondition(harmonics, index, edges, (invariant) => outsideReflectance(index, outward, invariant, k), downward);
+  if (outward.length > 0) return at;
+  const fixed = at(0);
+  return () => fixed;
+}
+
 /** Scattered fluence at a depth in a layer, `depth` and `rest` in cm from its faces, `beam` the beam's own fluence there. */
 export function scatteredFluence(s: LateralSolution, layer: number, depth: number, rest: number, beam: number): number {
   let sum = s.beamFluences[layer]! * beam;
@@ -95,13 +117,14 @@ function addFace(
   moments: Float64Array,
   layer: ScaledLayer,
   modes: HarmonicModes,
-  beam: CollimatedBeam,
+  beamDown: number,
+  beamUp: number,
   index: number,
   atTop: boolean,
 ): void {
   const across = Math.exp(-layer.extinction * layer.thicknessCm);
-  const down = atTop ? beam.down[index]! : beam.down[index]! * across;
-  const up = atTop ? beam.up[index]! * across : beam.up[index]!;
+  const down = atTop ? beamDown : beamDown * across;
+  const up = atTop ? beamUp * across : beamUp;
   const { values } = matrix;
   const { vectors, fades, beamAnswer } = modes;
   for (let r = 0; r < modeCount; r++) {

@@ -1,6 +1,7 @@
 import { hankelWeights } from '../numeric/hankel.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
 import { type BeamProfile, beamTransform } from './beam-profile.js';
+import { isClear } from './clear-layers.js';
 import { collimatedBeam } from './collimated.js';
 import { type ScaledLayer, scaleLayer } from './harmonic-modes.js';
 import { harmonicsUpTo } from './harmonics.js';
@@ -37,10 +38,22 @@ export function solveSpotSpread(layers: readonly OpticalLayer[], degree: number)
   const tables = new WeakMap<SpreadPoints, Float64Array>();
   const width = frequencies.length + 1;
 
+  const first = layers.findIndex((layer) => !isClear(layer));
+  const last = layers.findLastIndex((layer) => !isClear(layer));
   const solveFrequencies = () => {
-    const solve = lateralSolver(harmonicsUpTo(degree), layers, scaled, beam);
+    const solve = lateralSolver(harmonicsUpTo(degree), {
+      layers: layers.slice(first, last + 1),
+      scaled: scaled.slice(first, last + 1),
+      above: layers.slice(0, first).reverse(),
+      below: layers.slice(last + 1),
+      beamDown: beam.down.slice(first, last + 1),
+      beamUp: beam.up.slice(first, last + 1),
+    });
     return { broad: solve(broadFrequency), each: Array.from(frequencies, solve) };
   };
+
+  const beamAt = (j: number, depth: number, rest: number): number =>
+    beam.down[j]! * Math.exp(-scaled[j]!.extinction * depth) + beam.up[j]! * Math.exp(-scaled[j]!.extinction * rest);
 
   /** Per point: fluence of the broad beam, then fluence at each frequency. */
   const tabulate = (points: SpreadPoints): Float64Array => {
@@ -53,11 +66,16 @@ export function solveSpotSpread(layers: readonly OpticalLayer[], degree: number)
       const layer = scaled[j]!;
       const depth = points.belowTopsUm[i]! * 1e-4;
       const rest = Math.max(0, layer.thicknessCm - depth);
-      const own = beam.down[j]! * Math.exp(-layer.extinction * depth) + beam.up[j]! * Math.exp(-layer.extinction * rest);
-      table[i * width] = own + scatteredFluence(solutions.broad, j, depth, rest, own);
+      const own = beamAt(j, depth, rest);
+      // clear layers hold the light scattered at the face they border on
+      const at = Math.min(Math.max(j, first), last);
+      const down = j < first ? 0 : j > last ? scaled[at]!.thicknessCm : depth;
+      const up = scaled[at]!.thicknessCm - down;
+      const along = at === j ? own : beamAt(at, down, up);
+      table[i * width] = own + scatteredFluence(solutions.broad, at - first, down, up, along);
       for (let q = 0; q < frequencies.length; q++) {
         const narrowed = own * Math.exp(-peakLoss(scaled, degree, j, depth, frequencies[q]!));
-        table[i * width + 1 + q] = narrowed + scatteredFluence(solutions.each[q]!, j, depth, rest, own);
+        table[i * width + 1 + q] = narrowed + scatteredFluence(solutions.each[q]!, at - first, down, up, along);
       }
     }
     tables.set(points, table);
@@ -66,6 +84,7 @@ export function solveSpotSpread(layers: readonly OpticalLayer[], degree: number)
 
   return {
     ratios: (profile, points) => {
+      if (first < 0) return new Float64Array(points.layers.length).fill(1); // nothing scatters
       const weights = beamWeights(profile);
       const table = tabulate(points);
       const ratios = new Float64Array(points.layers.length);
