@@ -54,7 +54,7 @@ describe('broad beam by discrete ordinates', () => {
       expect(Math.abs(specularReflectance + diffuseReflectance + transmittance + absorbedFraction - 1)).toBeLessThan(1e-12);
       for (const part of [diffuseReflectance, transmittance, absorbedFraction]) {
         expect(part).toBeGreaterThan(-1e-8);
-        expect(part).toBeLessThan(1);
+        expect(part).toBeLessThanOrEqual(1);
       }
       const total = layers.reduce((sum, one) => sum + one.thicknessUm, 0);
       const depths = [0, 0.1, 0.3, 0.5, 0.9, 1].map((part) => part * total);
