@@ -127,11 +127,12 @@ function checkQuestion({ layers, beams, depthsUm }: RunQuestion): void {
 
 const eventsPerCm = (layer: OpticalLayer) => layer.absorptionPerCm + layer.scatteringPerCm;
 
-/** Slice about a depth, in cm. It straddles a boundary only within the finer height, and never one where the index changes. */
+/** Slice about a depth, in cm. It straddles a boundary only within the finer height, and never one where the index changes: there
+ *  fluence jumps, and the depth of the boundary belongs to the layer below. */
 function scoreSlice(depth: number, layers: readonly OpticalLayer[], tops: readonly number[], bottoms: readonly number[]) {
   const last = layers.length - 1;
   let at = 0;
-  while (at < last && depth > bottoms[at]!) at++;
+  while (at < last && depth >= bottoms[at]! * (1 - 1e-12)) at++;
   const reach = (layer: OpticalLayer) => {
     const reduced = layer.absorptionPerCm + layer.scatteringPerCm * (1 - layer.anisotropy);
     return 0.03 / Math.max(1, Math.sqrt(3 * layer.absorptionPerCm * reduced), 0.3 * layer.absorptionPerCm, 0.3 * reduced);
@@ -140,7 +141,7 @@ function scoreSlice(depth: number, layers: readonly OpticalLayer[], tops: readon
   for (let i = 0; i <= at; i++) events += (Math.min(depth, bottoms[i]!) - tops[i]!) * eventsPerCm(layers[i]!);
   const unmet = (0.05 * Math.exp(Math.min(20, events / 2))) / Math.max(1, eventsPerCm(layers[at]!));
   const coarse = Math.min(reach(layers[at]!), unmet, 25e-4, layers[at]!.thicknessUm * 1e-4 * 0.25);
-  const mostEvents = Math.max(...[at, at + 1].map((i) => eventsPerCm(layers[Math.min(last, i)]!)));
+  const mostEvents = Math.max(...[at - 1, at, at + 1].map((i) => eventsPerCm(layers[Math.min(last, Math.max(0, i))]!)));
   const fine = Math.min(coarse / 10, 5e-4 / Math.max(1, mostEvents));
   const half = Math.max(fine, Math.min(coarse, depth - tops[at]!, bottoms[at]! - depth));
   const sharedBelow = at < last && layers[at]!.refractiveIndex === layers[at + 1]!.refractiveIndex;

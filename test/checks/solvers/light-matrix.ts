@@ -22,14 +22,20 @@ function opticalLayer([
 
 let solved: { key: string; solution: LightSolution } | undefined;
 
-function fluenceRatio({ layers, spot, depthMm }: MatrixInputs): number {
-  const key = JSON.stringify(layers);
-  if (solved?.key !== key) solved = { key, solution: solveLight(layers.map(opticalLayer), { accuracy: 'ranking' }) };
-  return solved.solution.fluenceRatios(spot, [depthMm * 1000])[0]!;
+function solve({ layers }: MatrixInputs, accuracy: 'ranking' | 'fine'): LightSolution {
+  const key = `${accuracy} ${JSON.stringify(layers)}`;
+  if (solved?.key !== key) solved = { key, solution: solveLight(layers.map(opticalLayer), { accuracy }) };
+  return solved.solution;
+}
+
+function fluenceRatio(inputs: MatrixInputs): number {
+  return solve(inputs, 'ranking').fluenceRatios(inputs.spot, [inputs.depthMm * 1000])[0]!;
 }
 
 export const solvers: Record<string, (inputs: MatrixInputs) => number> = {
   'fluence ratio on the axis, target 1 %': fluenceRatio,
   'fluence ratio on the axis, target 3 %': fluenceRatio,
   'fluence ratio on the axis, target 5 %': fluenceRatio,
+  'diffuse reflectance': (inputs) => solve(inputs, 'fine').diffuseReflectance,
+  'absorbed fraction': (inputs) => solve(inputs, 'fine').absorbedFraction,
 };
