@@ -5,6 +5,7 @@ import { fresnelReflectance } from './fresnel.js';
 import { type DepthModes, type LayerModes, layerModes } from './layer-modes.js';
 import { modeStates } from './mode-states.js';
 import { makeOrdinates, type Ordinates } from './ordinates.js';
+import { singleScatteringExcess } from './single-scattering.js';
 
 /** Radiative transfer solved in a stack of layers under a broad beam at normal incidence, per incident irradiance. */
 export interface BroadBeam {
@@ -37,7 +38,7 @@ export function solveBroadBeam(layers: readonly OpticalLayer[], perRegion: numbe
     size += 2 * mode.count;
   }
   const amplitudes = joinLayers(layers, ordinates, modes, beam, starts);
-  const alongDepth = modes.map(({ sums, differences, ...rest }): DepthModes => rest); // the rest need not be kept
+  const alongDepth = modes.map(({ sums, differences, backScattering, ...rest }): DepthModes => rest); // the rest need not be kept
 
   const evaluate = (layer: number, belowTopUm: number, wantFlux: boolean): number => {
     const mode = alongDepth[layer]!;
@@ -57,13 +58,17 @@ export function solveBroadBeam(layers: readonly OpticalLayer[], perRegion: numbe
     return sum;
   };
 
+  // light that single scattering returns beyond what the ordinates carry is missing from all that is scattered on inside
+  const excess = singleScatteringExcess(layers, modes, ordinates, beam.down);
+  const inside = 1 - excess / (1 - beam.surfaceReflectance);
+  const entering = evaluate(0, 0, true);
   const last = layers.length - 1;
   return {
     specularReflectance: beam.surfaceReflectance,
-    diffuseReflectance: 1 - beam.surfaceReflectance - evaluate(0, 0, true),
-    transmittance: evaluate(last, layers[last]!.thicknessUm, true),
-    fluence: (layer, belowTopUm) => Math.max(0, evaluate(layer, belowTopUm, false)),
-    flux: (layer, belowTopUm) => evaluate(layer, belowTopUm, true),
+    diffuseReflectance: 1 - beam.surfaceReflectance - inside * entering,
+    transmittance: inside * evaluate(last, layers[last]!.thicknessUm, true),
+    fluence: (layer, belowTopUm) => Math.max(0, inside * evaluate(layer, belowTopUm, false)),
+    flux: (layer, belowTopUm) => inside * evaluate(layer, belowTopUm, true),
   };
 }
 

@@ -8,6 +8,8 @@ import type { LayerOrdinates } from './ordinates.js';
 export interface LayerModes extends DepthModes {
   readonly sums: Float64Array;
   readonly differences: Float64Array;
+  /** Source of upward radiance over 2 pi n^2 along each ray from a downward beam of unit irradiance. */
+  readonly backScattering: Float64Array;
 }
 
 /** What of a layer's modes is needed to follow them along depth once their amplitudes are known. */
@@ -137,6 +139,7 @@ export function layerModes(layer: OpticalLayer, rays: LayerOrdinates, moments: n
     kappas,
     sums,
     differences,
+    backScattering: cosines.map((cosine, i) => (evenSource[i]! - oddSource[i]!) / (2 * Math.sqrt(weights[i]! / cosine))),
     fluenceFactors,
     fluxFactors,
     alphas,
