@@ -29,8 +29,12 @@ export class Remarks {
     if (!this.#assumptions.has(assumption.name)) this.#assumptions.set(assumption.name, assumption);
   }
 
+  /** Every caution; figures recalled from memory among the assumptions add one that names them. */
   get cautions(): Caution[] {
-    return [...this.#cautions.values()];
+    const recalled = [...this.#assumptions.values()].filter(({ status }) => status === 'from-memory').map(({ name }) => name);
+    if (recalled.length === 0) return [...this.#cautions.values()];
+    const text = `No source could be opened for these figures; check them before any use that matters: ${recalled.join(', ')}.`;
+    return [...this.#cautions.values(), { code: 'from-memory', text }];
   }
 
   get assumptions(): Assumption[] {

@@ -3,6 +3,7 @@ import type { HemoglobinTable, WholeBloodTable } from '../spectra/blood.js';
 import type { Chromophores } from '../spectra/chromophore.js';
 import type { ThermalFigures } from '../thermal/thermal-figures.js';
 import type { SkinFigures } from '../tissue/skin-figures.js';
+import type { AblationFigure } from './ablation-figure.js';
 
 /** One file of the reference data as it was read. */
 export interface DataFile {
@@ -21,6 +22,8 @@ export interface ReferenceData {
   readonly skin: SkinFigures;
   readonly thermal: ThermalFigures;
   readonly media: readonly LaserLine[];
+  /** Ablation figures by id. */
+  readonly ablation: ReadonlyMap<string, AblationFigure>;
   readonly files: readonly DataFile[];
   /** Citations by key. */
   readonly bibliography: ReadonlyMap<string, string>;

@@ -25,6 +25,7 @@ export interface HemoglobinTable {
 const lastTableNm = 990; // hemoglobin tables end at 1000 nm; the whole-blood rows take over just before
 const bridgeFromNm = 995;
 const bridgeToNm = 1070;
+const redCellsBelowNm = 450; // Bosschaart2014 against Prahl1998: 0.45 to 0.8 of the solution below 450 nm, 0.9 to 1 above except at 590-600 nm
 const referenceHemoglobinGPerL = 150; // hemoglobin at which the whole-blood rows hold: hematocrit 45 %
 const hemoglobinEndsNm = 1150; // between 'about 1100' of Friebel2009 and where the bridge's slope would end
 const waterOfBlood = 0.75; // Friebel2009: beyond 1100 nm blood absorbs as water lowered by 20 to 30 %
@@ -32,6 +33,7 @@ const waterOfBlood = 0.75; // Friebel2009: beyond 1100 nm blood absorbs as water
 /** Absorption of blood, 1/cm, before any flattening by red cells or vessels.
  *  To 990 nm: hemoglobin by saturation, plus the water of blood. 995 to 1070 nm: the two published whole-blood rows, between them in
  *  the logarithm. Beyond: water lowered by a quarter, and what hemoglobin adds falls evenly to nothing at 1150 nm. Valid: from the start of the hemoglobin tables to the end of the water table.
+ *  Red cells are not modelled: whole blood absorbs 0.45 of this at 420 nm, 0.95 at 540 to 580 nm.
  *  Throws: out-of-range. @source Prahl1998; Bosschaart2014 appendix; Friebel2009 abstract */
 export function bloodAbsorptionPerCm(
   wavelengthNm: number,
@@ -44,6 +46,12 @@ export function bloodAbsorptionPerCm(
   const saturation = contents.oxygenSaturationFraction;
   const amount = contents.hemoglobinGPerL / referenceHemoglobinGPerL;
   const waterPerCm = absorptionPerCm(chromophoreOf(chromophores, 'water'), wavelengthNm);
+  if (wavelengthNm < redCellsBelowNm) {
+    remarks?.caution(
+      'red-cells',
+      'Blood is computed as a solution: below 450 nm red cells flatten its absorption, and whole blood was measured at 0.45 to 0.8 of this figure.',
+    );
+  }
   if (wavelengthNm <= lastTableNm) {
     const oxygenated = absorptionPerCm(
       chromophoreOf(chromophores, hemoglobin.oxygenatedId),

@@ -13,6 +13,8 @@ export interface Chromophore {
   readonly sources: readonly string[];
   readonly status: DataStatus;
   readonly note: string;
+  /** Stretch of the spectrum that is known only to a factor; absent where the source's own accuracy holds throughout. */
+  readonly spread?: { readonly factor: number; readonly fromNm: number; readonly toNm: number };
 }
 
 export type Chromophores = ReadonlyMap<string, Chromophore>;
@@ -64,7 +66,8 @@ export function absorptionPerCm(chromophore: Chromophore, wavelengthNm: number, 
   return (naturalFromDecadic * molarExtinctionPerCmPerM(chromophore, wavelengthNm) * gPerL) / molarMass;
 }
 
-/** Absorption of a chromophore by id; a closed form used beyond its source's range leaves a caution. Throws: out-of-range, unknown-reference. */
+/** Absorption of a chromophore by id; a closed form used beyond its source's range, and a sparse
+ *  stretch of a table, leave a caution. Throws: out-of-range, unknown-reference. */
 export function absorptionOf(chromophores: Chromophores, id: string, wavelengthNm: number, remarks?: Remarks): number {
   const chromophore = chromophoreOf(chromophores, id);
   const [, toNm] = spectrumRangeNm(chromophore.spectrum);
@@ -72,6 +75,13 @@ export function absorptionOf(chromophores: Chromophores, id: string, wavelengthN
     remarks.caution(
       'extrapolated-spectrum',
       `${chromophore.name}: the published law is used beyond ${toNm} nm, where its author extrapolates.`,
+    );
+  }
+  const { spread } = chromophore;
+  if (remarks && spread && wavelengthNm >= spread.fromNm && wavelengthNm <= spread.toNm) {
+    remarks.caution(
+      'sparse-spectrum',
+      `${chromophore.name} is known only to a factor of ${spread.factor} from ${spread.fromNm} to ${spread.toNm} nm.`,
     );
   }
   return absorptionPerCm(chromophore, wavelengthNm);

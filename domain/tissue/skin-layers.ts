@@ -46,6 +46,12 @@ export function skinLayers(
   const epidermisPerCm = melanin * melanosomePerCm + (1 - melanin) * (bloodlessPerCm + skin.epidermisWaterFraction * waterPerCm);
   const dermisPerCm = blood * flatBloodPerCm + (1 - blood) * (bloodlessPerCm + skin.dermisWaterFraction * waterPerCm);
   const { fat_lipid: lipid, fat_water: fatWater } = reference.skin.structure;
+  for (const [name, { value, source, status }] of [
+    ['lipid', lipid],
+    ['water', fatWater],
+  ] as const) {
+    remarks.assume({ name: `skin.fat.${name}Fraction`, value, source, status });
+  }
   const fatPerCm = lipid.value * lipidPerCm(chromophores, wavelengthNm, remarks) + fatWater.value * waterPerCm;
   return [
     layer('epidermis', skin.epidermisThicknessUm, epidermisPerCm, wavelengthNm, skin, reference.skin, remarks),
@@ -63,7 +69,7 @@ function lipidPerCm(chromophores: Chromophores, wavelengthNm: number, remarks: R
       `Fat is tabulated from ${fromNm} to ${toNm} nm; its nearest value is used in the deepest layer.`,
     );
   }
-  return absorptionOf(chromophores, 'lipid', held);
+  return absorptionOf(chromophores, 'lipid', held, remarks);
 }
 
 function layer(
@@ -75,14 +81,31 @@ function layer(
   figures: SkinFigures,
   remarks: Remarks,
 ): OpticalLayer {
+  const law = figures.scattering[name];
+  const index = figures.refractiveIndex[name];
+  const { offset, slopePerNm, ceiling, source, status } = figures.anisotropy;
   const anisotropy = anisotropyOf(figures.anisotropy, wavelengthNm);
-  const reduced = skin.scatteringFactor * reducedScatteringPerCm(figures.scattering[name], wavelengthNm, remarks);
+  remarks.assume({
+    name: `skin.${name}.reducedScatteringAt500NmPerCm`,
+    value: law.aPerCm,
+    unit: '1/cm',
+    source: law.source,
+    status: law.status,
+  });
+  remarks.assume({ name: `skin.${name}.refractiveIndex`, value: index.value, source: index.source, status: index.status });
+  remarks.assume({
+    name: 'skin.anisotropy',
+    value: `${offset} + ${slopePerNm} x wavelength in nm, at most ${ceiling}`,
+    source,
+    status,
+  });
+  const reduced = skin.scatteringFactor * reducedScatteringPerCm(law, wavelengthNm, remarks);
   return {
     name,
     thicknessUm,
     absorptionPerCm,
     scatteringPerCm: reduced / (1 - anisotropy),
     anisotropy,
-    refractiveIndex: figures.refractiveIndex[name].value,
+    refractiveIndex: index.value,
   };
 }

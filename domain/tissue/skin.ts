@@ -52,6 +52,7 @@ const givenSpread = 1.15; // a melanosome fraction that the user vouches for; co
 export function resolveSkin(description: SkinDescription, figures: SkinFigures, remarks: Remarks): ResolvedSkin {
   const pigment = resolvePigment(description, figures, remarks);
   cautionAboutTan(description, remarks);
+  cautionAboutDarkSkin(pigment.melanosomeFraction, figures, remarks);
   const take = (field: keyof SkinDescription & string, id: StructureId, min: number, max: number): number => {
     const given = description[field];
     if (typeof given === 'number') {
@@ -62,8 +63,14 @@ export function resolveSkin(description: SkinDescription, figures: SkinFigures, 
     remarks.assume({ name: `skin.${field}`, value, unit, source, status });
     return value;
   };
+  const settle = (name: string, id: StructureId): number => {
+    const { value, unit, source, status } = figures.structure[id];
+    remarks.assume({ name, value, unit, source, status });
+    return value;
+  };
   const hematocrit = take('hematocritFraction', 'hematocrit', 0.1, 0.75);
-  const { hematocrit: usual, hemoglobin_mass: hemoglobinMass, blood_fraction: blood } = figures.structure;
+  const { hematocrit: usual, blood_fraction: blood } = figures.structure;
+  const hemoglobinMass = settle('skin.hemoglobinAtUsualHematocritGPerL', 'hemoglobin_mass');
   const bloodFraction = take('bloodFraction', 'blood_fraction', 0, 0.5);
   const bloodGiven = description.bloodFraction !== undefined;
   const water = description.waterFraction;
@@ -71,16 +78,16 @@ export function resolveSkin(description: SkinDescription, figures: SkinFigures, 
   return {
     ...pigment,
     epidermisThicknessUm: take('epidermisThicknessUm', 'epidermis_thickness', 20, 1000),
-    dermisThicknessUm: figures.structure.dermis_thickness.value,
-    fatThicknessUm: figures.structure.fat_thickness.value,
+    dermisThicknessUm: settle('skin.dermisThicknessUm', 'dermis_thickness'),
+    fatThicknessUm: settle('skin.fatThicknessUm', 'fat_thickness'),
     bloodFraction,
     bloodFractionLow: bloodGiven ? bloodFraction / 1.5 : blood.low,
     bloodFractionHigh: bloodGiven ? Math.min(0.5, bloodFraction * 1.5) : blood.high,
     oxygenSaturationFraction: take('oxygenSaturationFraction', 'oxygen_saturation', 0, 1),
-    hemoglobinGPerL: (hemoglobinMass.value * hematocrit) / usual.value,
-    epidermisWaterFraction: water ?? figures.structure.epidermis_water.value,
-    dermisWaterFraction: water ?? figures.structure.dermis_water.value,
-    backgroundVesselRadiusUm: figures.structure.background_vessel_diameter.value / 2,
+    hemoglobinGPerL: (hemoglobinMass * hematocrit) / usual.value,
+    epidermisWaterFraction: water ?? settle('skin.epidermis.waterFraction', 'epidermis_water'),
+    dermisWaterFraction: water ?? settle('skin.dermis.waterFraction', 'dermis_water'),
+    backgroundVesselRadiusUm: settle('skin.backgroundVesselDiameterUm', 'background_vessel_diameter') / 2,
     scatteringFactor: 1,
   };
 }
@@ -148,7 +155,7 @@ export function itaDegreesOf(lightnessL: number, yellownessB: number): number {
   return (Math.atan((lightnessL - 50) / yellownessB) * 180) / Math.PI;
 }
 
-function cautionAboutTan({ tan, phototype }: SkinDescription, remarks: Remarks): void {
+function cautionAboutTan({ tan }: SkinDescription, remarks: Remarks): void {
   if (tan === 'recent') {
     remarks.caution(
       'tan',
@@ -160,10 +167,14 @@ function cautionAboutTan({ tan, phototype }: SkinDescription, remarks: Remarks):
       'Sun exposure is not stated: a tan, self-tan or pigment measured elsewhere or long ago makes the epidermal limit too high.',
     );
   }
-  if (phototype === 'V' || phototype === 'VI') {
+}
+
+function cautionAboutDarkSkin(melanosomeFraction: number, { phototypes }: SkinFigures, remarks: Remarks): void {
+  const betweenIvAndV = Math.sqrt(phototypes.IV.melanosomeFraction * phototypes.V.melanosomeFraction);
+  if (melanosomeFraction >= betweenIvAndV) {
     remarks.caution(
       'dark-skin-visible-light',
-      'In phototypes V and VI cooling may not protect the epidermis at visible wavelengths.',
+      'In skin as dark as phototypes V and VI cooling may not protect the epidermis at visible wavelengths.',
     );
   }
 }

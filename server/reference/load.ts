@@ -4,7 +4,7 @@ import { join, relative, sep } from 'node:path';
 import type { DataFile, ReferenceData } from '../../domain/reference/reference-data.js';
 import { DataError, parseDataFile, textIn } from './data-file.js';
 import { readChromophore, readWholeBlood } from './read-spectra.js';
-import { readLines, readThermal } from './read-thermal.js';
+import { readAblation, readLines, readThermal } from './read-tables.js';
 import { readSkinFigures } from './read-tissue.js';
 
 const manifestName = 'manifest.csv';
@@ -30,7 +30,8 @@ export function loadReferenceData(dataFolder: string): ReferenceData {
     const bytes = readFileSync(join(dataFolder, name));
     texts.set(name, bytes.toString('utf8'));
     const entry = manifest.get(name);
-    if (!entry) throw new DataError(name, null, `not listed in ${manifestName}; rebuild it with "npm run data:manifest"`);
+    if (!entry)
+      throw new DataError(name, null, `not listed in ${manifestName}; write it anew with test/support/make-data-manifest.ts`);
     files.push({ name, version: entry.version, sha256: sha256Of(bytes) });
     manifest.delete(name);
   }
@@ -60,6 +61,7 @@ export function loadReferenceData(dataFolder: string): ReferenceData {
     skin: readSkinFigures(text),
     thermal: readThermal(text),
     media: readLines(text('media/lines.csv')),
+    ablation: readAblation(text),
     files,
     bibliography,
   };

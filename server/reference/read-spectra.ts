@@ -35,7 +35,16 @@ export function readChromophore(file: string, text: string, bibliography: Readon
     sources,
     status: statusIn(file, null, header.status),
     note: header.note ?? '',
+    ...(header.spread === undefined ? {} : { spread: readSpread(file, header.spread) }),
   };
+}
+
+function readSpread(file: string, text: string): NonNullable<Chromophore['spread']> {
+  const match = /^(\d+(?:\.\d+)?) from (\d+) to (\d+) nm$/.exec(text);
+  const [factor, fromNm, toNm] = (match?.slice(1) ?? []).map(Number) as [number, number, number];
+  if (!match || factor < 1 || toNm <= fromNm)
+    throw new DataError(file, null, `spread '${text}' must read like '1.5 from 1600 to 1760 nm'`);
+  return { factor, fromNm, toNm };
 }
 
 function readTable(parsed: ParsedDataFile, column: string): Spectrum {

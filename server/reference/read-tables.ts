@@ -1,4 +1,5 @@
 import type { LaserLine } from '../../domain/media/laser-line.js';
+import type { AblationFigure } from '../../domain/reference/ablation-figure.js';
 import type { CoolingFigure, DamagePair, ThermalFigures, ThermalMaterial } from '../../domain/thermal/thermal-figures.js';
 import { DataError, type DataRow, numberIn, type ParsedDataFile, parseDataFile, statusIn, textIn } from './data-file.js';
 
@@ -83,4 +84,26 @@ export function readLines(text: string): LaserLine[] {
     },
   );
   return [...lines.values()];
+}
+
+export function readAblation(text: (name: string) => string): ReadonlyMap<string, AblationFigure> {
+  return byId(
+    'interaction/ablation.csv',
+    text,
+    ['id', 'laser', 'wavelength_nm', 'tissue', 'quantity', 'low', 'high', 'unit', 'source', 'status', 'note'],
+    (parsed, row, shared): AblationFigure => {
+      const low = numberIn(parsed, row, 'low', 0, 1e6);
+      return {
+        ...shared,
+        laser: textIn(parsed, row, 'laser'),
+        wavelengthNm: numberIn(parsed, row, 'wavelength_nm', 100, 20000),
+        tissue: textIn(parsed, row, 'tissue'),
+        quantity: textIn(parsed, row, 'quantity'),
+        low,
+        high: numberIn(parsed, row, 'high', low, 1e6),
+        unit: textIn(parsed, row, 'unit'),
+        note: row.cells.note ?? '',
+      };
+    },
+  );
 }
