@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { readdirSync, readFileSync } from 'node:fs';
 import { join, relative, sep } from 'node:path';
 import type { DataFile, ReferenceData } from '../../domain/reference/reference-data.js';
+import { hemoglobinTables } from '../../domain/spectra/blood.js';
 import { DataError, parseDataFile, textIn } from './data-file.js';
 import { readChromophore, readWholeBlood } from './read-spectra.js';
 import { readAblation, readLines, readThermal } from './read-tables.js';
@@ -57,7 +58,7 @@ export function loadReferenceData(dataFolder: string): ReferenceData {
     chromophores: folder('chromophores/'),
     alternatives: folder('alternatives/'),
     wholeBlood: readWholeBlood(text('tissue/whole-blood.csv')),
-    hemoglobin: { oxygenatedId: 'oxyhemoglobin', deoxygenatedId: 'deoxyhemoglobin' },
+    hemoglobin: hemoglobinTables.prahl1998,
     skin: readSkinFigures(text),
     thermal: readThermal(text),
     media: readLines(text('media/lines.csv')),

@@ -57,7 +57,7 @@ describe('cooling phases', () => {
     expect(coolingPhases(spray, 0.5, figures, new Remarks(), { repetitionRateHz: 10, pulseCount: 5 })).toHaveLength(2);
     const remarks = new Remarks();
     expect(coolingPhases(spray, 100, figures, remarks, { repetitionRateHz: 1, pulseCount: 100 })).toHaveLength(2);
-    expect(remarks.cautions.map((caution) => caution.code)).toEqual(['one-spurt']);
+    expect(remarks.cautions.map((caution) => caution.code)).toEqual(['one-spurt', 'from-memory']);
   });
 
   it('name every default they fill in, and none that was given', () => {
