@@ -1,5 +1,6 @@
 import { interpolateLog } from '../numeric/interpolate.js';
 import type { Remarks } from '../quantities/caution.js';
+import { assertWithin } from '../quantities/errors.js';
 import { absorptionPerCm, type Chromophores, chromophoreOf } from './chromophore.js';
 
 /** Amounts that set the absorption of blood. */
@@ -32,7 +33,8 @@ const waterOfBlood = 0.75; // Friebel2009: beyond 1100 nm blood absorbs as water
 
 /** Absorption of blood, 1/cm, before any flattening by red cells or vessels.
  *  To 990 nm: hemoglobin by saturation, plus the water of blood. 995 to 1070 nm: the two published whole-blood rows, between them in
- *  the logarithm. Beyond: water lowered by a quarter, and what hemoglobin adds falls evenly to nothing at 1150 nm. Valid: from the start of the hemoglobin tables to the end of the water table.
+ *  the logarithm. Beyond: water lowered by a quarter, and what hemoglobin adds falls evenly to nothing at 1150 nm.
+ *  Valid: from the start of the hemoglobin tables to the end of the water table.
  *  Red cells are not modelled: whole blood absorbs 0.45 of this at 420 nm, 0.95 at 540 to 580 nm.
  *  Throws: out-of-range. @source Prahl1998; Bosschaart2014 appendix; Friebel2009 abstract */
 export function bloodAbsorptionPerCm(
@@ -75,15 +77,28 @@ export function bloodAbsorptionPerCm(
     source: 'Bosschaart2014 Friebel2009',
     status: 'read-secondary',
   });
-  const bridge = (values: Float64Array, nm: number) =>
-    interpolateLog(wholeBlood.wavelengthsNm, values, nm, 'wavelengthNm for whole blood');
-  const rowAt = (nm: number) =>
-    saturation * bridge(wholeBlood.oxygenatedPerCm, nm) + (1 - saturation) * bridge(wholeBlood.deoxygenatedPerCm, nm);
-  if (wavelengthNm <= bridgeToNm) return amount * rowAt(Math.max(wavelengthNm, bridgeFromNm));
-  const endPerCm = rowAt(bridgeToNm);
+  return waterOfBlood * waterPerCm + amount * absorptionBridgedPerCm(wavelengthNm, saturation, chromophores, wholeBlood);
+}
+
+/** What hemoglobin of 150 g/L adds to the water of blood beyond its tables, 1/cm: 995 to 1070 nm by the two rows of whole blood, between
+ *  them in the logarithm, then evenly to nothing at 1150 nm. Valid: from 990 nm. Throws: out-of-range.
+ *  @source Bosschaart2014 appendix; Friebel2009 abstract */
+export function absorptionBridgedPerCm(
+  wavelengthNm: number,
+  oxygenSaturationFraction: number,
+  chromophores: Chromophores,
+  wholeBlood: WholeBloodTable,
+): number {
+  const hemoglobinAt = (nm: number): number => {
+    const row = (values: Float64Array) => interpolateLog(wholeBlood.wavelengthsNm, values, nm, 'wavelengthNm for whole blood');
+    const { oxygenatedPerCm, deoxygenatedPerCm } = wholeBlood;
+    const blood = oxygenSaturationFraction * row(oxygenatedPerCm) + (1 - oxygenSaturationFraction) * row(deoxygenatedPerCm);
+    return Math.max(0, blood - waterOfBlood * absorptionPerCm(chromophoreOf(chromophores, 'water'), nm));
+  };
+  assertWithin('wavelengthNm', wavelengthNm, lastTableNm, Number.MAX_VALUE);
+  if (wavelengthNm <= bridgeToNm) return hemoglobinAt(Math.max(wavelengthNm, bridgeFromNm));
   const share = Math.max(0, (hemoglobinEndsNm - wavelengthNm) / (hemoglobinEndsNm - bridgeToNm));
-  const hemoglobinRest = share * amount * Math.max(0, endPerCm - waterOfBlood * waterPerCm);
-  return hemoglobinRest + waterOfBlood * waterPerCm;
+  return share * hemoglobinAt(bridgeToNm);
 }
 
 const secondTableFromNm = 450; // Zijlstra1991
