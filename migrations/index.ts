@@ -1,0 +1,6 @@
+import { keysAndClinics } from './0001-keys-and-clinics.js';
+import { referenceRuns } from './0002-reference-runs.js';
+import type { Migration } from './migration.js';
+
+/** Every step, in order. */
+export const migrations: readonly Migration[] = [keysAndClinics, referenceRuns];

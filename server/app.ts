@@ -1,0 +1,70 @@
+import rateLimit from '@fastify/rate-limit';
+import fastify from 'fastify';
+import { serializerCompiler, type ZodTypeProvider } from 'fastify-type-provider-zod';
+import { uuidv7 } from 'uuidv7';
+import { registerChromophoresRoutes } from './api/chromophores/chromophores.routes.js';
+import { registerKeysRoutes } from './api/keys/keys.routes.js';
+import { openKeyStore } from './api/keys/keys.store.js';
+import { registerLaserMediaRoutes } from './api/laser-media/laser-media.routes.js';
+import { registerReferenceRunsRoutes } from './api/reference-runs/reference-runs.routes.js';
+import { registerServiceRoutes } from './api/service/service.routes.js';
+import { registerThermalRoutes } from './api/thermal/thermal.routes.js';
+import { registerTissueOpticsRoutes } from './api/tissue-optics/tissue-optics.routes.js';
+import { openReplyShelf } from './db/idempotent-replies.store.js';
+import { installAuthentication } from './http/actor.js';
+import type { App } from './http/app-type.js';
+import { answerBrokenConnection } from './http/broken-connection.js';
+import { installHooks } from './http/hooks.js';
+import { installIdempotency } from './http/idempotency.js';
+import { installOpenApi } from './http/openapi.js';
+import { installProblems } from './http/problems.js';
+import { validatorCompiler } from './http/validation.js';
+import type { Parts } from './parts.js';
+
+/** Settings and parts become an app. The rooms below are all there are; a bench may add a yardstick beside them. */
+export async function buildApp(parts: Parts, addBeside: (app: App) => void = () => {}): Promise<App> {
+  const app = fastify({
+    loggerInstance: parts.log,
+    disableRequestLogging: true,
+    genReqId: () => uuidv7(),
+    bodyLimit: parts.config.bodyLimitBytes,
+    routerOptions: { caseSensitive: true, ignoreTrailingSlash: false, maxParamLength: 200 },
+    exposeHeadRoutes: true,
+    forceCloseConnections: 'idle',
+    clientErrorHandler: answerBrokenConnection,
+    onProtoPoisoning: 'error',
+    onConstructorPoisoning: 'error',
+  }).withTypeProvider<ZodTypeProvider>();
+  app.setValidatorCompiler(validatorCompiler);
+  app.setSerializerCompiler(serializerCompiler);
+  installProblems(app);
+  installHooks(app);
+  const keys = openKeyStore(parts.db);
+  installAuthentication(app, keys.findActor);
+  await app.register(rateLimit, {
+    max: parts.config.rateLimitPerMinute,
+    timeWindow: 60_000,
+    hook: 'preParsing',
+    enableDraftSpec: true,
+    keyGenerator: (request) => request.actor?.keyId ?? request.ip,
+  });
+  installIdempotency(app, openReplyShelf(parts.db, parts.now));
+  app.addHook('onResponse', (request, reply, done) => {
+    const route = request.routeOptions.url ?? 'unknown';
+    request.log.debug({ method: request.method, route, status: reply.statusCode, ms: Math.round(reply.elapsedTime) }, 'answered');
+    done();
+  });
+  await installOpenApi(app);
+
+  registerServiceRoutes(app, parts);
+  registerKeysRoutes(app, parts, keys);
+  registerThermalRoutes(app, parts);
+  registerReferenceRunsRoutes(app, parts);
+  registerChromophoresRoutes(app, parts);
+  registerTissueOpticsRoutes(app, parts);
+  registerLaserMediaRoutes(app, parts);
+
+  addBeside(app);
+  await app.ready();
+  return app;
+}

@@ -1,0 +1,50 @@
+import { createHash } from 'node:crypto';
+import type { FastifyBaseLogger } from 'fastify';
+import { Registry } from 'prom-client';
+import type { ReferenceData } from '../domain/reference/reference-data.js';
+import type { Config } from './config.js';
+import { type Db, openDatabase } from './db/database.js';
+import { loadReferenceData } from './reference/load.js';
+
+/** What every room is built from. */
+export interface Parts {
+  readonly config: Config;
+  readonly log: FastifyBaseLogger;
+  readonly db: Db;
+  readonly reference: ReferenceData;
+  readonly dataVersion: { readonly name: string; readonly version: string; readonly sha256: string };
+  readonly now: () => Date;
+  readonly metrics: Registry;
+  /** Run at the end, last opened first. */
+  readonly closing: (() => void | Promise<void>)[];
+}
+
+/** Opens database and reference data. Throws errors whose message is one clear line. */
+export function openParts(options: {
+  readonly config: Config;
+  readonly log: FastifyBaseLogger;
+  readonly dataFolder: string;
+  readonly now: () => Date;
+}): Parts {
+  const { config, log, now } = options;
+  const reference = loadReferenceData(options.dataFolder);
+  const db = openDatabase(config.databaseFile, now);
+  const all = createHash('sha256')
+    .update(reference.files.map((file) => `${file.name} ${file.sha256}\n`).join(''))
+    .digest('hex');
+  const version = reference.files.map((file) => file.version).reduce((newest, next) => (next > newest ? next : newest), '');
+  return {
+    config,
+    log,
+    db,
+    reference,
+    dataVersion: { name: 'reference-data', version, sha256: all },
+    now,
+    metrics: new Registry(),
+    closing: [() => void db.close()],
+  };
+}
+
+export async function closeParts(parts: Parts): Promise<void> {
+  for (const close of [...parts.closing].reverse()) await close();
+}
