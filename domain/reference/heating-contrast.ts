@@ -48,6 +48,7 @@ export function heatingContrast(input: {
   if (!top) throw new DomainError('contradiction', 'heating is compared in at least one layer', { fields: ['layers'] });
   const fluenceRatioAtDepth = light.fluenceRatios(spot, [depthUm])[0]!;
   const epidermis = light.absorbedPerCm(spot, [0, top.thicknessUm])[0]!;
-  if (!(epidermis > 0)) throw new DomainError('no-solution', 'the epidermis absorbs nothing; there is no ratio to it');
+  if (!(top.absorptionPerCm > 0 && epidermis > 0))
+    throw new DomainError('no-solution', 'the epidermis absorbs nothing; there is no ratio to it');
   return { fluenceRatioAtDepth, heatingContrast: (chromophorePerCm * fluenceRatioAtDepth) / epidermis };
 }

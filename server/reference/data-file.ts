@@ -34,7 +34,7 @@ export function parseDataFile(file: string, text: string, columns: readonly stri
   }
   let records: string[][];
   try {
-    records = parse(lines.slice(first).join('\n'), { relax_column_count: true, skip_empty_lines: true }) as string[][];
+    records = parse(lines.slice(first).join('\n'), { relax_column_count: true }) as string[][];
   } catch (error) {
     throw new DataError(file, first + 1, (error as Error).message);
   }

@@ -31,13 +31,17 @@ export function readThermal(text: (name: string) => string): ThermalFigures {
       'thermal/cooling.csv',
       text,
       ['id', 'heat_transfer_w_per_m2_k', 'low', 'high', 'temperature_c', 'source', 'status', 'note'],
-      (parsed, row, shared): CoolingFigure => ({
-        ...shared,
-        heatTransferWPerM2K: numberIn(parsed, row, 'heat_transfer_w_per_m2_k', 0, 1e6),
-        heatTransferLowWPerM2K: numberIn(parsed, row, 'low', 0, 1e6),
-        heatTransferHighWPerM2K: numberIn(parsed, row, 'high', 0, 1e6),
-        temperatureC: numberIn(parsed, row, 'temperature_c', -200, 60),
-      }),
+      (parsed, row, shared): CoolingFigure => {
+        const low = numberIn(parsed, row, 'low', 0, 1e6);
+        const high = numberIn(parsed, row, 'high', low, 1e6);
+        return {
+          ...shared,
+          heatTransferWPerM2K: numberIn(parsed, row, 'heat_transfer_w_per_m2_k', low, high),
+          heatTransferLowWPerM2K: low,
+          heatTransferHighWPerM2K: high,
+          temperatureC: numberIn(parsed, row, 'temperature_c', -200, 60),
+        };
+      },
     ),
   };
 }

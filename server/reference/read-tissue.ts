@@ -69,9 +69,7 @@ export function readSkinFigures(text: (name: string) => string): SkinFigures {
       ['layer', 'index', 'low', 'high', 'source', 'status'],
       layerNames,
       (parsed, row): Figure => ({
-        value: numberIn(parsed, row, 'index', 1, 2),
-        low: numberIn(parsed, row, 'low', 1, 2),
-        high: numberIn(parsed, row, 'high', 1, 2),
+        ...bounded(parsed, row, 'index', 1, 2),
         unit: '1',
         ...provenance(parsed, row),
       }),
@@ -81,25 +79,38 @@ export function readSkinFigures(text: (name: string) => string): SkinFigures {
       text,
       ['phototype', 'melanosome_fraction', 'low', 'high', 'ita_low_degrees', 'ita_high_degrees', 'source', 'status'],
       phototypes,
-      (parsed, row): PhototypeFigure => ({
-        melanosomeFraction: numberIn(parsed, row, 'melanosome_fraction', 1e-4, 0.5),
-        low: numberIn(parsed, row, 'low', 1e-4, 0.5),
-        high: numberIn(parsed, row, 'high', 1e-4, 0.5),
-        itaLowDegrees: numberIn(parsed, row, 'ita_low_degrees', -90, 90),
-        itaHighDegrees: numberIn(parsed, row, 'ita_high_degrees', -90, 90),
-        ...provenance(parsed, row),
-      }),
+      (parsed, row): PhototypeFigure => {
+        const low = numberIn(parsed, row, 'low', 1e-4, 0.5);
+        const high = numberIn(parsed, row, 'high', low, 0.5);
+        const itaLowDegrees = numberIn(parsed, row, 'ita_low_degrees', -90, 90);
+        return {
+          melanosomeFraction: numberIn(parsed, row, 'melanosome_fraction', low, high),
+          low,
+          high,
+          itaLowDegrees,
+          itaHighDegrees: numberIn(parsed, row, 'ita_high_degrees', itaLowDegrees, 90),
+          ...provenance(parsed, row),
+        };
+      },
     ),
   };
 }
 
+function bounded(
+  parsed: ParsedDataFile,
+  row: DataRow,
+  column: string,
+  min: number,
+  max: number,
+): Pick<Figure, 'value' | 'low' | 'high'> {
+  const low = numberIn(parsed, row, 'low', min, max);
+  const high = numberIn(parsed, row, 'high', low, max);
+  return { value: numberIn(parsed, row, column, low, high), low, high };
+}
+
 function readFigure(parsed: ParsedDataFile, row: DataRow): Figure {
-  const low = numberIn(parsed, row, 'low', 0, 1e6);
-  const high = numberIn(parsed, row, 'high', low, 1e6);
   return {
-    value: numberIn(parsed, row, 'value', low, high),
-    low,
-    high,
+    ...bounded(parsed, row, 'value', 0, 1e6),
     unit: textIn(parsed, row, 'unit'),
     ...provenance(parsed, row),
   };
