@@ -25,7 +25,7 @@ function setLine(name: string, line: number, text: string): void {
 describe('loading reference data', () => {
   it('gives every file with its hash, frozen', () => {
     const reference = loadReferenceData(copy);
-    expect(reference.files.map(({ name }) => name)).toEqual(listDataFiles(copy));
+    expect(reference.files.map(({ name }) => name)).toEqual(listDataFiles(copy).filter((name) => name !== 'bibliography.csv'));
     for (const { sha256, version } of reference.files) {
       expect(sha256).toMatch(/^[0-9a-f]{64}$/);
       expect(version).toBeTruthy();
@@ -117,6 +117,13 @@ describe('loading reference data', () => {
     expect(() => loadReferenceData(copy)).toThrow(/thermal\/more\.csv: not listed/);
     rmSync(join(copy, 'manifest.csv'));
     expect(() => loadReferenceData(copy)).toThrow(/manifest\.csv: not there/);
+  });
+
+  it('takes one more source in the bibliography, but no key twice', () => {
+    change('bibliography.csv', (lines) => [...lines.slice(0, -1), 'Someone1999,"A. Someone, A paper (1999)",', '']);
+    expect(loadReferenceData(copy).bibliography.has('Someone1999')).toBe(true);
+    change('bibliography.csv', (lines) => [...lines.slice(0, -1), lines[1]!, '']);
+    expect(() => loadReferenceData(copy)).toThrow(/bibliography\.csv line \d+: key '\w+' stands twice/);
   });
 
   it('refuses an empty file', () => {
