@@ -3,6 +3,7 @@ import { absorptionBridgedPerCm } from '../spectra/blood.js';
 import { absorptionPerCm, chromophoreOf } from '../spectra/chromophore.js';
 import { spectrumRangeNm } from '../spectra/spectrum.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
+import { flatteningFactor } from '../tissue/vessel-correction.js';
 import type { BeamProfile } from '../transport/beam-profile.js';
 import type { LightSolution } from '../transport/layered-solver.js';
 import type { ReferenceData } from './reference-data.js';
@@ -33,22 +34,25 @@ export function comparableAbsorptionPerCm(
 }
 
 /** Heat per volume in a chromophore at a depth over the mean heat per volume in the epidermis, before any of it flows: absorption x internal
- *  fluence over the mean of the same in the topmost layer. Equal heat capacities; the chromophore neither shades itself nor its surroundings.
+ *  fluence over the mean of the same in the topmost layer. Equal heat capacities; a chromophore gathered in cylinders of a radius is flattened
+ *  by them, one without radius is spread evenly, and neither shades its surroundings.
  *  Valid: a depth inside the stack. Throws: out-of-range; contradiction without layers; no-solution where the epidermis absorbs nothing.
- *  @source AndersonParrish1983 (selective absorption) */
+ *  @source AndersonParrish1983 (selective absorption); Verkruysse1997 flattening */
 export function heatingContrast(input: {
   readonly chromophorePerCm: number;
+  readonly cylinderRadiusUm?: number;
   readonly layers: readonly OpticalLayer[];
   readonly light: LightSolution;
   readonly spot: BeamProfile | null;
   readonly depthUm: number;
 }): { readonly fluenceRatioAtDepth: number; readonly heatingContrast: number } {
-  const { chromophorePerCm, layers, light, spot, depthUm } = input;
+  const { chromophorePerCm, cylinderRadiusUm = 0, layers, light, spot, depthUm } = input;
   const [top] = layers;
   if (!top) throw new DomainError('contradiction', 'heating is compared in at least one layer', { fields: ['layers'] });
+  const flattenedPerCm = chromophorePerCm * flatteningFactor(chromophorePerCm, cylinderRadiusUm);
   const fluenceRatioAtDepth = light.fluenceRatios(spot, [depthUm])[0]!;
   const epidermis = light.absorbedPerCm(spot, [0, top.thicknessUm])[0]!;
   if (!(top.absorptionPerCm > 0 && epidermis > 0))
     throw new DomainError('no-solution', 'the epidermis absorbs nothing; there is no ratio to it');
-  return { fluenceRatioAtDepth, heatingContrast: (chromophorePerCm * fluenceRatioAtDepth) / epidermis };
+  return { fluenceRatioAtDepth, heatingContrast: (flattenedPerCm * fluenceRatioAtDepth) / epidermis };
 }

@@ -131,6 +131,8 @@ describe('GET /v1/chromophores/{id}/wavelengths', () => {
     expect(contrasts).toEqual([...contrasts].sort((a, b) => b - a));
     const at = (nm: number) => items.find(({ wavelengthNm }: { wavelengthNm: number }) => wavelengthNm === nm);
     for (const visible of [532, 577, 585]) expect(at(visible).heatingContrast).toBeGreaterThan(at(1064).heatingContrast);
+    expect(items[0].wavelengthNm).toBeGreaterThanOrEqual(530);
+    expect(items[0].wavelengthNm).toBeLessThanOrEqual(600);
     expect(at(585).medium).toBe('pulsed dye');
     expect(at(450)).toMatchObject({ wavelengthNm: 450 });
     expect(at(450).medium).toBeUndefined();

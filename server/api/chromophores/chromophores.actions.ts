@@ -133,12 +133,13 @@ export function rankWavelengths(query: z.output<typeof WavelengthsQuery>, chromo
   const wavelengthsNm = [...new Set([...grid, ...lines.map(({ wavelengthNm }) => wavelengthNm)])];
   const skin = resolveSkin(skinOf(query), reference.skin, remarks);
   const spot = { shape: 'circle', diameterMm } as const;
+  const cylinderRadiusUm = id.includes('hemoglobin') ? skin.backgroundVesselRadiusUm : 0;
   const items = wavelengthsNm.map((wavelengthNm) => {
     const layers = faultOf('fromNm', () => skinLayers(skin, wavelengthNm, reference, remarks));
     const chromophorePerCm = comparableAbsorptionPerCm(reference, id, wavelengthNm, concentrationGPerL);
     const light = solveLight(layers, { accuracy: 'ranking' });
     const contrast = faultOf('depthMm', () =>
-      heatingContrast({ chromophorePerCm, layers, light, spot, depthUm: query.depthMm * 1000 }),
+      heatingContrast({ chromophorePerCm, cylinderRadiusUm, layers, light, spot, depthUm: query.depthMm * 1000 }),
     );
     const media = new Set(lines.filter((line) => line.wavelengthNm === wavelengthNm).map(({ medium }) => medium));
     return {

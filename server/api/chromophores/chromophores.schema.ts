@@ -81,7 +81,11 @@ export const WavelengthsResult = z
           wavelengthNm: z.number(),
           absorptionPerCm: z.number(),
           fluenceRatioAtDepth: z.number().describe('Internal fluence on the axis over the fluence on the skin'),
-          heatingContrast: z.number().describe('Heat per volume in the chromophore over the mean of the epidermis'),
+          heatingContrast: z
+            .number()
+            .describe(
+              'Heat per volume in the chromophore over the mean of the epidermis; hemoglobins flattened in vessels of the background diameter',
+            ),
           medium: z.string().optional().describe('Laser media that emit this wavelength'),
         }),
       )

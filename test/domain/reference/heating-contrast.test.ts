@@ -23,6 +23,12 @@ describe('contrast of heating', () => {
     expect(Math.max(top!, bottom!)).toBeGreaterThan(1);
   });
 
+  it('[Verkruysse1997] is flattened by the cylinders that hold the chromophore: (1 - exp(-2)) / 2 for 2 mu R = 2', () => {
+    const input = { chromophorePerCm: 200, layers, light, spot: null, depthUm: 300 };
+    const ratio = heatingContrast({ ...input, cylinderRadiusUm: 50 }).heatingContrast / heatingContrast(input).heatingContrast;
+    expect(ratio).toBeCloseTo((1 - Math.exp(-2)) / 2, 12);
+  });
+
   it('falls with depth and has no value outside the stack or over a clear epidermis', () => {
     const at = (depthUm: number) =>
       heatingContrast({ chromophorePerCm: 200, layers, light, spot: null, depthUm }).heatingContrast;
