@@ -36,6 +36,15 @@ export function decodeCursor(cursor: string | undefined, length: number): (strin
   ]);
 }
 
+/** The place at which a list without rows of its own goes on: 0, or one after the place in the cursor. Throws: malformed. */
+export function decodePlace(cursor: string | undefined): number {
+  const place = decodeCursor(cursor, 1)?.[0] ?? -1;
+  if (Number.isSafeInteger(place) && Number(place) >= -1) return Number(place) + 1;
+  throw new RequestError('malformed', 'The cursor was not made by this service.', [
+    { pointer: '?cursor', detail: 'must be a cursor as given by `next`' },
+  ]);
+}
+
 /** Cuts `limit + 1` rows to a page, sets the Link header, and gives the cursor of the next page. */
 export function pageOf<T>(
   request: FastifyRequest,

@@ -30,7 +30,12 @@ describe('GET /v1/laser-media', () => {
     expect(second.body.items[0].id).not.toBe(first.body.items[19].id);
   });
 
-  it.each(['limit=0', 'limit=501', 'cursor=nonsense', 'page=2'])('refuses %s', async (query) => {
-    await service.get(`/v1/laser-media?${query}`).expect(400);
-  });
+  const forged = (position: unknown) => `cursor=${Buffer.from(JSON.stringify(position)).toString('base64url')}`;
+
+  it.each(['limit=0', 'limit=501', 'cursor=nonsense', forged(['abc']), forged([-7]), forged([1, 2]), 'page=2'])(
+    'refuses %s',
+    async (query) => {
+      await service.get(`/v1/laser-media?${query}`).expect(400);
+    },
+  );
 });

@@ -1,3 +1,4 @@
+import { uuidv7 } from 'uuidv7';
 import type { z } from 'zod';
 import { Remarks } from '../../../domain/quantities/caution.js';
 import { comparableAbsorptionPerCm, comparableRangeNm, heatingContrast } from '../../../domain/reference/heating-contrast.js';
@@ -12,10 +13,12 @@ import { spectrumRangeNm } from '../../../domain/spectra/spectrum.js';
 import { resolveSkin } from '../../../domain/tissue/skin.js';
 import { skinLayers } from '../../../domain/tissue/skin-layers.js';
 import { solveLight } from '../../../domain/transport/layered-solver.js';
+import type { Db } from '../../db/database.js';
 import { faultOf } from '../../http/query-faults.js';
 import { type Fault, RequestError } from '../../http/request-error.js';
 import { skinOf } from '../../schemas/skin-query.js';
-import type { SpectrumQuery, WavelengthsQuery } from './chromophores.schema.js';
+import type { OwnChromophoreRequest, SpectrumQuery, WavelengthsQuery } from './chromophores.schema.js';
+import { countOwnChromophores, insertOwnChromophore, type OwnChromophore } from './chromophores.store.js';
 
 const steps = [1, 2, 5, 10, 20];
 const usualPoints = 2000;
@@ -25,10 +28,34 @@ const usualSpotDiameterMm = 7;
 const skinFromNm = 400;
 const skinToNm = 2400;
 
-export function findChromophore({ chromophores, alternatives }: ReferenceData, id: string): Chromophore {
-  const found = chromophores.get(id) ?? alternatives.get(id);
+export function findChromophore({ chromophores }: ReferenceData, id: string): Chromophore {
+  const found = chromophores.get(id);
   if (!found) throw new RequestError('not-found', 'There is no such chromophore; see /v1/chromophores.');
   return found;
+}
+
+const mostOwn = 1000;
+
+export function storeOwnChromophore(
+  { db, now }: { readonly db: Db; readonly now: () => Date },
+  { keyId, clinicId }: { readonly keyId: string; readonly clinicId: string },
+  body: z.output<typeof OwnChromophoreRequest>,
+): OwnChromophore {
+  if (countOwnChromophores(db, clinicId) >= mostOwn)
+    throw new RequestError('conflict', `The clinic has ${mostOwn} spectra of its own, as many as it may have.`);
+  const { measuredAt = null, relativeUncertainty = null, note = '', ...given } = body;
+  const own = {
+    id: uuidv7(),
+    clinicId,
+    createdAt: now().toISOString(),
+    createdBy: keyId,
+    measuredAt,
+    relativeUncertainty,
+    note,
+    ...given,
+  };
+  insertOwnChromophore(db, own);
+  return own;
 }
 
 interface Range {

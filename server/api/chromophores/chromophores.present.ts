@@ -1,6 +1,7 @@
 import type { ReferenceData } from '../../../domain/reference/reference-data.js';
 import type { Chromophore } from '../../../domain/spectra/chromophore.js';
 import { spectrumRangeNm } from '../../../domain/spectra/spectrum.js';
+import { chromophoreOfOwn, type OwnChromophore } from './chromophores.store.js';
 
 export function presentChromophore(chromophore: Chromophore, { alternatives, bibliography }: ReferenceData) {
   const { id, name, quantity, unit, spectrum, sources, status, note, spread } = chromophore;
@@ -14,12 +15,19 @@ export function presentChromophore(chromophore: Chromophore, { alternatives, bib
     fromNm,
     toNm,
     points: spectrum.form === 'table' ? spectrum.wavelengthsNm.length : 0,
-    sources: sources.map((key) => ({ key, citation: bibliography.get(key) ?? key })),
+    sources: sources.map((key) =>
+      bibliography.has(key) ? { key, citation: bibliography.get(key)! } : { key: 'own', citation: key },
+    ),
     status,
     note,
     ...(spread ? { spread } : {}),
     ...(alternatives.has(id) ? { alternativeTo: id.slice(0, id.indexOf('-')) } : {}),
   };
+}
+
+export function presentOwnChromophore(own: OwnChromophore, reference: ReferenceData) {
+  const { createdAt, measuredAt, relativeUncertainty } = own;
+  return { ...presentChromophore(chromophoreOfOwn(own), reference), own: { createdAt, measuredAt, relativeUncertainty } };
 }
 
 interface Columns {

@@ -1,24 +1,28 @@
+import type { FastifyRequest } from 'fastify';
 import { z } from 'zod';
 import { withHemoglobinTable } from '../../../domain/reference/choose-hemoglobin.js';
+import { actorOf, clinicOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { presentCalculation } from '../../http/calculation.js';
 import { preferredType } from '../../http/hooks.js';
-import { decodeCursor, defaultLimit, pageOf } from '../../http/paging.js';
-import { bannered, calculationReplies, listReplies } from '../../http/replies.js';
+import { decodePlace, defaultLimit, pageOf } from '../../http/paging.js';
+import { bannered, calculationReplies, itemReplies, listReplies } from '../../http/replies.js';
 import { sendCacheable } from '../../http/versions.js';
 import type { Parts } from '../../parts.js';
 import { modelVersion } from '../../version.js';
-import { findChromophore, rankWavelengths, readSpectrum } from './chromophores.actions.js';
-import { presentChromophore, presentSpectrumCsv } from './chromophores.present.js';
+import { findChromophore, rankWavelengths, readSpectrum, storeOwnChromophore } from './chromophores.actions.js';
+import { presentChromophore, presentOwnChromophore, presentSpectrumCsv } from './chromophores.present.js';
 import {
   ChromophoreItem,
   ChromophoreParams,
   ChromophoresQuery,
+  OwnChromophoreRequest,
   SpectrumQuery,
   SpectrumResult,
   WavelengthsQuery,
   WavelengthsResult,
 } from './chromophores.schema.js';
+import { countOwnChromophores, findOwnChromophore, listOwnChromophores, withOwnChromophore } from './chromophores.store.js';
 
 const spectrumTypes = ['application/json', 'text/csv'] as const;
 
@@ -34,6 +38,8 @@ const spectrumResponse = {
 export function registerChromophoresRoutes(app: App, parts: Parts): void {
   const reference = withHemoglobinTable(parts.reference, 'prahl1998');
   const version = `${parts.dataVersion.sha256} ${modelVersion}`;
+  const referenceFor = (request: FastifyRequest, id: string) =>
+    withOwnChromophore(parts.db, reference, actorOf(request).clinicId, id);
   const config = { role: 'reader' as const };
   const tags = ['reference data'];
   const published = [...reference.chromophores.values()].map((chromophore, place) => ({
@@ -48,10 +54,47 @@ export function registerChromophoresRoutes(app: App, parts: Parts): void {
     },
     async (request, reply) => {
       const { limit = defaultLimit, cursor } = request.query;
-      const after = Number(decodeCursor(cursor, 1)?.[0] ?? -1);
-      const rows = published.slice(after + 1, after + 2 + limit);
-      const page = pageOf(request, reply, rows, limit, ({ place }) => [place]);
-      return sendCacheable(request, reply, version, bannered(page));
+      const { clinicId } = actorOf(request);
+      const start = decodePlace(cursor);
+      const shared = published.slice(start, start + limit + 1);
+      const offset = Math.max(0, start - published.length);
+      const own = listOwnChromophores(parts.db, clinicId, offset, limit + 1 - shared.length).map((row, i) => ({
+        ...presentOwnChromophore(row, reference),
+        place: published.length + offset + i,
+      }));
+      const page = pageOf(request, reply, [...shared, ...own], limit, ({ place }) => [place]);
+      return sendCacheable(request, reply, `${version} ${clinicId} ${countOwnChromophores(parts.db, clinicId)}`, bannered(page));
+    },
+  );
+  app.post(
+    '/v1/chromophores',
+    {
+      config: { role: 'physicist', idempotent: true },
+      schema: {
+        tags,
+        summary: "Store the clinic's own measured spectrum",
+        body: OwnChromophoreRequest,
+        response: itemReplies(ChromophoreItem, 201),
+      },
+    },
+    async (request, reply) => {
+      const actor = { ...actorOf(request), clinicId: clinicOf(request) };
+      const item = presentOwnChromophore(storeOwnChromophore(parts, actor, request.body), reference);
+      return reply.code(201).header('location', `/v1/chromophores/${item.id}`).send(bannered({ item }));
+    },
+  );
+  app.get(
+    '/v1/chromophores/:id',
+    {
+      config,
+      schema: { tags, summary: 'Read a chromophore', params: ChromophoreParams, response: itemReplies(ChromophoreItem) },
+    },
+    async (request, reply) => {
+      const { id } = request.params;
+      const { clinicId } = actorOf(request);
+      const own = reference.chromophores.has(id) ? undefined : findOwnChromophore(parts.db, clinicId, id);
+      const item = own ? presentOwnChromophore(own, reference) : presentChromophore(findChromophore(reference, id), reference);
+      return sendCacheable(request, reply, `${version} ${clinicId}`, bannered({ item }));
     },
   );
   app.get(
@@ -67,7 +110,8 @@ export function registerChromophoresRoutes(app: App, parts: Parts): void {
       },
     },
     async (request, reply) => {
-      const answer = readSpectrum(request.query, findChromophore(reference, request.params.id));
+      const { id } = request.params;
+      const answer = readSpectrum(request.query, findChromophore(referenceFor(request, id), id));
       if (preferredType(request.headers.accept, spectrumTypes) === 'application/json')
         return sendCacheable(request, reply, version, presentCalculation(answer, parts));
       reply.type('text/csv; charset=utf-8').serializer((payload) => String(payload));
@@ -87,12 +131,13 @@ export function registerChromophoresRoutes(app: App, parts: Parts): void {
       },
     },
     async (request, reply) => {
-      const chromophore = findChromophore(reference, request.params.id);
+      const { id } = request.params;
+      const own = referenceFor(request, id);
       return sendCacheable(
         request,
         reply,
         version,
-        presentCalculation(rankWavelengths(request.query, chromophore, reference), parts),
+        presentCalculation(rankWavelengths(request.query, findChromophore(own, id), own), parts),
       );
     },
   );

@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { pageQuery } from '../../http/paging.js';
-import { instant, queryQuantity } from '../../schemas/numbers.js';
+import { instant, quantity, queryQuantity, text, whenever } from '../../schemas/numbers.js';
 import { skinQuery } from '../../schemas/skin-query.js';
 
 const asOf = instant.optional().describe('Time to stand in the provenance; the clock when absent');
@@ -26,9 +26,58 @@ export const ChromophoreItem = z
       .object({ factor: z.number(), fromNm: z.number(), toNm: z.number() })
       .optional()
       .describe('Stretch that is known only to this factor'),
+    own: z
+      .object({ createdAt: z.string(), measuredAt: z.string().nullable(), relativeUncertainty: z.number().nullable() })
+      .optional()
+      .describe('Present on spectra that the clinic measured itself'),
     alternativeTo: z.string().optional().describe('The chromophore of which this is a second table'),
   })
   .meta({ id: 'Chromophore' });
+
+const fewestPoints = 2;
+const mostPoints = 5000;
+const column = (unit: string, min: number, max: number, description: string) =>
+  z
+    .array(quantity(unit, min, max, description))
+    .min(fewestPoints, { error: `needs at least ${fewestPoints} points` })
+    .max(mostPoints, { error: `takes at most ${mostPoints} points` });
+
+export const OwnChromophoreRequest = z
+  .strictObject({
+    name: text(80, 'What it is: an ink, a dye, a tan'),
+    source: text(400, 'How, by whom and with what it was measured, or where it was published'),
+    measuredAt: instant.optional().describe('When it was measured'),
+    relativeUncertainty: quantity('', 0, 2, 'Standard uncertainty of the absorption over its value (k = 1)').optional(),
+    note: text(400, 'Anything else that a reader should know').optional(),
+    wavelengthsNm: column('nm', 100, 20_000, 'Vacuum wavelength').superRefine((values, context) => {
+      const at = values.findIndex((value, i) => i > 0 && !(value > values[i - 1]!));
+      if (at > 0)
+        context.addIssue({ code: 'custom', path: [at], message: `must be greater than ${values[at - 1]} nm before it` });
+    }),
+    absorptionsPerCm: column('1/cm', 0, 1e7, 'Absorption coefficient, natural base'),
+  })
+  .refine(
+    (body) => !body?.wavelengthsNm || !body?.absorptionsPerCm || body.wavelengthsNm.length === body.absorptionsPerCm.length,
+    {
+      error: 'must be as many as wavelengthsNm',
+      path: ['absorptionsPerCm'],
+      ...whenever,
+    },
+  )
+  .meta({
+    id: 'OwnChromophoreRequest',
+    description: "A clinic's own measured spectrum; its id can then stand as chromophoreId in that clinic's calculations",
+    examples: [
+      {
+        name: 'black ink, lot 7',
+        source: 'own measurement, integrating sphere, diluted 1:1000 and scaled back',
+        measuredAt: '2026-02-11T10:00:00+01:00',
+        relativeUncertainty: 0.1,
+        wavelengthsNm: [500, 700, 900, 1100],
+        absorptionsPerCm: [5200, 4700, 4300, 4000],
+      },
+    ],
+  });
 
 export const SpectrumQuery = z.strictObject({
   fromNm: wavelength('First wavelength; the start of the spectrum when absent'),

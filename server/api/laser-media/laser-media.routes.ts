@@ -1,5 +1,5 @@
 import type { App } from '../../http/app-type.js';
-import { decodeCursor, defaultLimit, pageOf } from '../../http/paging.js';
+import { decodePlace, defaultLimit, pageOf } from '../../http/paging.js';
 import { bannered, listReplies } from '../../http/replies.js';
 import { sendCacheable } from '../../http/versions.js';
 import type { Parts } from '../../parts.js';
@@ -24,8 +24,8 @@ export function registerLaserMediaRoutes(app: App, { reference, dataVersion }: P
     },
     async (request, reply) => {
       const { limit = defaultLimit, cursor } = request.query;
-      const after = Number(decodeCursor(cursor, 1)?.[0] ?? -1);
-      const rows = lines.slice(after + 1, after + 2 + limit);
+      const start = decodePlace(cursor);
+      const rows = lines.slice(start, start + limit + 1);
       const page = pageOf(request, reply, rows, limit, ({ place }) => [place]);
       return sendCacheable(request, reply, `${dataVersion.sha256} ${modelVersion}`, bannered(page));
     },
