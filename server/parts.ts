@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import type { FastifyBaseLogger } from 'fastify';
 import { Registry } from 'prom-client';
 import type { ReferenceData } from '../domain/reference/reference-data.js';
+import { type LightFields, makeLightFields } from '../domain/transport/light-field.js';
 import type { Config } from './config.js';
 import { type Db, openDatabase } from './db/database.js';
 import { loadReferenceData } from './reference/load.js';
@@ -15,9 +16,13 @@ export interface Parts {
   readonly dataVersion: { readonly name: string; readonly version: string; readonly sha256: string };
   readonly now: () => Date;
   readonly metrics: Registry;
+  /** Solved light fields, kept by their optics. */
+  readonly lightFields: LightFields;
   /** Run at the end, last opened first. */
   readonly closing: (() => void | Promise<void>)[];
 }
+
+const keptLightFields = 400; // about 0.1 MB each: more than two rankings of 141 wavelengths
 
 /** Opens database and reference data. Throws errors whose message is one clear line. */
 export function openParts(options: {
@@ -32,7 +37,7 @@ export function openParts(options: {
   const all = createHash('sha256')
     .update(reference.files.map((file) => `${file.name} ${file.sha256}\n`).join(''))
     .digest('hex');
-  const version = reference.files.map((file) => file.version).reduce((newest, next) => (next > newest ? next : newest), '');
+  const version = [...reference.files.map((file) => file.version)].sort().at(-1) ?? '';
   return {
     config,
     log,
@@ -41,6 +46,7 @@ export function openParts(options: {
     dataVersion: { name: 'reference-data', version, sha256: all },
     now,
     metrics: new Registry(),
+    lightFields: makeLightFields(keptLightFields),
     closing: [() => void db.close()],
   };
 }

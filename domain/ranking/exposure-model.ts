@@ -9,6 +9,7 @@ import { HeatModes } from '../thermal/heat-modes.js';
 import type { Cooling } from '../thermal/surface-cooling.js';
 import type { DamagePair } from '../thermal/thermal-figures.js';
 import type { ResolvedSkin } from '../tissue/skin.js';
+import { solveLight } from '../transport/layered-solver.js';
 
 /** Pulses given on one place: one, or a train. */
 export interface Train {
@@ -29,6 +30,8 @@ export interface ExposureModel {
   /** Depths at which temperatures are followed, in this order: surface, basal layer, target center. */
   readonly placesUm: readonly [number, number, number];
   readonly epidermisPair: DamagePair;
+  /** Solves light; a store of solved fields may stand in for the solver. */
+  readonly solve: typeof solveLight;
 }
 
 export const surfacePlace = 0;
@@ -44,6 +47,7 @@ export function makeExposureModel(options: {
   readonly cooling?: Cooling | undefined;
   readonly reference: ReferenceData;
   readonly remarks: Remarks;
+  readonly solve?: typeof solveLight | undefined;
 }): ExposureModel {
   const { skin, reference, remarks } = options;
   const target = prepareTarget(options.target, { skin, reference, remarks });
@@ -65,6 +69,7 @@ export function makeExposureModel(options: {
     modes: new HeatModes(),
     placesUm: [0, skin.epidermisThicknessUm, target.depthUm],
     epidermisPair: pair,
+    solve: options.solve ?? solveLight,
   };
 }
 

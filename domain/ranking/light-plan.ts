@@ -2,10 +2,11 @@ import type { Spot } from '../beam/spot.js';
 import { absorptionOf } from '../spectra/chromophore.js';
 import type { OpticalLayer } from '../tissue/optical-layer.js';
 import { skinLayers } from '../tissue/skin-layers.js';
-import { type LightSolution, solveLight } from '../transport/layered-solver.js';
+import type { LightSolution } from '../transport/layered-solver.js';
 import type { ExposureModel } from './exposure-model.js';
 
-/** What one wavelength deposits under one spot, per unit incident fluence. */
+/** What one wavelength deposits under one spot on its axis, per unit incident fluence: energy over area, so that the axis of a Gaussian
+ *  gets twice as much. */
 export interface Deposit {
   /** Heat per volume in each cell of the heat grid over incident fluence, 1/cm. */
   readonly sourcePerCm: Float64Array;
@@ -48,13 +49,13 @@ export function planLight(model: ExposureModel, wavelengthNm: number): LightPlan
   const { skin, target, reference, remarks, grid } = model;
   const bottomUm = grid.facesUm[grid.facesUm.length - 1]!;
   const layers = downTo(bottomUm, skinLayers(skin, wavelengthNm, reference, remarks));
-  const light: LightSolution = solveLight(layers, { accuracy: 'ranking' });
+  const light: LightSolution = model.solve(layers, { accuracy: 'ranking' });
   const lesionFraction = target.lesionMelanosomeFraction;
   const lesionLayers =
     lesionFraction === undefined || lesionFraction === skin.melanosomeFraction
       ? layers
       : downTo(bottomUm, skinLayers({ ...skin, melanosomeFraction: lesionFraction }, wavelengthNm, reference, remarks));
-  const lesionLight = lesionLayers === layers ? light : solveLight(lesionLayers, { accuracy: 'ranking' });
+  const lesionLight = lesionLayers === layers ? light : model.solve(lesionLayers, { accuracy: 'ranking' });
   const heaterPerCm = target.heaterAbsorptionPerCm(wavelengthNm);
   const melanosomePerCm =
     skin.melanosomeFraction > 0 || target.melanosomesAreTarget ? melanosomeAbsorption(model, wavelengthNm) : 0;
@@ -65,13 +66,18 @@ export function planLight(model: ExposureModel, wavelengthNm: number): LightPlan
     wavelengthNm,
     depositUnder(spot) {
       const [basalRatio, targetRatio] = lesionLight.fluenceRatios(spot, depthsUm) as unknown as [number, number];
-      const sourcePerCm = light.absorbedPerCm(spot, grid.facesUm);
+      const axial = spot.shape === 'gaussian' ? 2 : 1;
+      const onAxis = (field: LightSolution) => {
+        const perCm = field.absorbedPerCm(spot, grid.facesUm);
+        return axial === 1 ? perCm : perCm.map((value) => axial * value);
+      };
+      const sourcePerCm = onAxis(light);
       return {
         sourcePerCm,
-        lesionSourcePerCm: lesionLight === light ? sourcePerCm : lesionLight.absorbedPerCm(spot, grid.facesUm),
+        lesionSourcePerCm: lesionLight === light ? sourcePerCm : onAxis(lesionLight),
         fluenceRatioAtTarget: targetRatio,
-        heaterExcessPerCm: heaterPerCm === null ? 0 : (heaterPerCm - backgroundPerCm) * targetRatio,
-        melanosomePerCm: melanosomePerCm * basalRatio,
+        heaterExcessPerCm: heaterPerCm === null ? 0 : axial * (heaterPerCm - backgroundPerCm) * targetRatio,
+        melanosomePerCm: axial * melanosomePerCm * basalRatio,
         absorptionContrast: (heaterPerCm ?? backgroundPerCm) / epidermisPerCm,
       };
     },

@@ -5,6 +5,7 @@ import { type ExposureModel, singlePulse } from './exposure-model.js';
 import { type FluenceWindow, windowOf } from './fluence-window.js';
 import { type HeatPlan, planHeat } from './heat-plan.js';
 import { type Deposit, type LightPlan, planLight } from './light-plan.js';
+import type { WindowSpread } from './window-spread.js';
 
 /** One candidate with its window and the facts it is judged by. Fields are null where the optics do not reach. */
 export interface JudgedCandidate {
@@ -14,7 +15,8 @@ export interface JudgedCandidate {
   readonly fluenceRatioAtTarget: number | null;
   readonly deliverable: boolean;
   readonly reasons: readonly string[];
-  readonly probabilityOfWindow?: number;
+  /** What sampling of the tissue says, where it was asked for. */
+  readonly spread?: WindowSpread;
 }
 
 /** Light by wavelength and heat by pulse, made once and kept while one request is answered. */
@@ -70,9 +72,8 @@ function spotKey(spot: Spot): string {
     : `${spot.shape}${spot.widthMm}x${'heightMm' in spot ? spot.heightMm : ''}`;
 }
 
-/** Judges every candidate and orders them: greater therapeutic ratio first, then lower threshold; those without a window last.
- *  A window exists when limit / threshold is at least `safetyFactor`. */
-export function rankCandidates(
+/** Judges every candidate, in their order. A window exists when limit / threshold is at least `safetyFactor`. */
+export function judgeCandidates(
   candidates: readonly Candidate[],
   plans: PlanStore,
   options: {
@@ -107,7 +108,12 @@ export function rankCandidates(
       reasons: [...windowReasons(plans.model, window, options.safetyFactor), ...obstacles],
     };
   });
-  return orderCandidates(judged, options.safetyFactor);
+  return judged;
+}
+
+/** Judges every candidate and orders them: greater therapeutic ratio first, then lower threshold; those without a window last. */
+export function rankCandidates(...[candidates, plans, options]: Parameters<typeof judgeCandidates>): JudgedCandidate[] {
+  return orderCandidates(judgeCandidates(candidates, plans, options), options.safetyFactor);
 }
 
 /** True when the greatest sparing fluence is at least `safetyFactor` times the least effective one. */
@@ -120,7 +126,7 @@ export function orderCandidates(judged: readonly JudgedCandidate[], safetyFactor
   return judged
     .map((item, index) => ({ item, index, open: hasWindow(item.window, safetyFactor) }))
     .sort((a, b) => {
-      const chance = (b.item.probabilityOfWindow ?? 0) - (a.item.probabilityOfWindow ?? 0);
+      const chance = (b.item.spread?.probabilityOfWindow ?? 0) - (a.item.spread?.probabilityOfWindow ?? 0);
       if (chance !== 0) return chance;
       if (a.open !== b.open) return a.open ? -1 : 1;
       const ratio = (b.item.window?.therapeuticRatio ?? -1) - (a.item.window?.therapeuticRatio ?? -1);
@@ -140,7 +146,8 @@ const limitText: Record<FluenceWindow['limitedBy'], string> = {
   breakdown: 'the irradiance would break the tissue down into plasma',
 };
 
-function windowReasons(model: ExposureModel, window: FluenceWindow, safetyFactor: number): string[] {
+/** Why there is no window, in words; empty when there is one. */
+export function windowReasons(model: ExposureModel, window: FluenceWindow, safetyFactor: number): string[] {
   if (model.target.noTarget) return [`no window: ${model.target.noTarget}`];
   const limit = `${Number(window.epidermalLimitJPerCm2.toPrecision(3))} J/cm2`;
   if (window.targetThresholdJPerCm2 === null) {

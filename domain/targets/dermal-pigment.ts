@@ -9,8 +9,8 @@ import { assertTargetRange, defineTarget, materialOf } from './target.js';
 export const dermalPigment = defineTarget({
   kind: 'dermal-pigment',
   shape: 'sphere',
-  sizeRangeUm: [0.02, 50], // single ink particle to a clump in a cell
-  depthRangeMm: [0.06, 5],
+  sizeRangeUm: [0.01, 80], // single ink particle to a clump in a cell, with room for their spread
+  depthRangeMm: [0.005, 30],
   chromophores: ['melanosome'],
   effectText: 'explosive vaporization at the granule',
   harmText: 'coagulation of the basal layer or surface, melanosome or bulk vaporization in the epidermis',

@@ -13,8 +13,8 @@ const darkShaftFraction = 0.55;
 export const hairFollicle = defineTarget({
   kind: 'hair-follicle',
   shape: 'cylinder',
-  sizeRangeUm: [15, 1000], // finest vellus shaft to widest follicle
-  depthRangeMm: [0.1, 8],
+  sizeRangeUm: [8, 2000], // finest vellus shaft to widest follicle, with room for their spread
+  depthRangeMm: [0.005, 30],
   chromophores: ['melanosome'],
   effectText: 'damage integral 1 at the outer edge of the follicle',
   harmText: 'coagulation of the basal layer or surface, melanosome or bulk vaporization in the epidermis',

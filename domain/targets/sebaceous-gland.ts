@@ -11,8 +11,8 @@ const sebumFraction = 0.5;
 export const sebaceousGland = defineTarget({
   kind: 'sebaceous-gland',
   shape: 'sphere',
-  sizeRangeUm: [50, 3000],
-  depthRangeMm: [0.1, 5],
+  sizeRangeUm: [30, 5000],
+  depthRangeMm: [0.005, 30],
   chromophores: ['lipid', 'water'],
   effectText: 'damage integral 1 at the edge of the gland',
   harmText: 'coagulation of the basal layer or surface, bulk vaporization in the epidermis',

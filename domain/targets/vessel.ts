@@ -11,8 +11,8 @@ import { assertTargetRange, damagePairOf, defineTarget, materialOf } from './tar
 export const vessel = defineTarget({
   kind: 'vessel',
   shape: 'cylinder',
-  sizeRangeUm: [5, 3000], // capillary loop to leg vein
-  depthRangeMm: [0.02, 10],
+  sizeRangeUm: [3, 5000], // capillary loop to leg vein, with room for their spread
+  depthRangeMm: [0.005, 30],
   chromophores: ['oxyhemoglobin', 'deoxyhemoglobin', 'water'],
   effectText: 'coagulation of the vessel wall (damage integral 1 at the vessel radius)',
   harmText: 'coagulation of the basal layer or surface, melanosome or bulk vaporization in the epidermis',

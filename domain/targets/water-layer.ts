@@ -8,7 +8,7 @@ export const waterLayer = defineTarget({
   kind: 'water-layer',
   shape: 'plane',
   sizeRangeUm: null,
-  depthRangeMm: [0.02, 5],
+  depthRangeMm: [0.005, 30],
   chromophores: ['water'],
   effectText: 'damage integral 1 of collagen at the stated depth',
   harmText: 'coagulation of the basal layer or surface, bulk vaporization in the epidermis',

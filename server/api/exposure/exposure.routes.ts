@@ -1,0 +1,37 @@
+import type { App } from '../../http/app-type.js';
+import { presentCalculation } from '../../http/calculation.js';
+import { calculationReplies } from '../../http/replies.js';
+import type { Parts } from '../../parts.js';
+import { findWindow, heat } from './exposure.actions.js';
+import { HeatingRequest, HeatingResult, WindowRequest, WindowResult } from './exposure.schema.js';
+
+export function registerExposureRoutes(app: App, parts: Parts): void {
+  const config = { role: 'reader' as const };
+  const tags = ['calculations'];
+  app.post(
+    '/v1/calculations/window',
+    {
+      config,
+      schema: {
+        tags,
+        summary: 'Least effective and greatest sparing fluence of one setting',
+        body: WindowRequest,
+        response: calculationReplies(WindowResult),
+      },
+    },
+    async (request) => presentCalculation(findWindow(request.body, parts), parts),
+  );
+  app.post(
+    '/v1/calculations/heating',
+    {
+      config,
+      schema: {
+        tags,
+        summary: 'Temperatures and damage of one fluence',
+        body: HeatingRequest,
+        response: calculationReplies(HeatingResult),
+      },
+    },
+    async (request) => presentCalculation(heat(request.body, parts), parts),
+  );
+}
