@@ -20,6 +20,7 @@ export interface ScatteringLaw {
   readonly mieExponent: number;
   readonly fromNm: number;
   readonly toNm: number;
+  /** Bounds about two standard deviations of all published laws for this tissue, up and down. */
   readonly spreadFactor: number;
   readonly source: string;
   readonly status: DataStatus;
