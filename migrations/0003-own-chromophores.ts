@@ -5,22 +5,21 @@ export const ownChromophores: Migration = {
   name: 'own-chromophores',
   sql: `
     CREATE TABLE own_chromophores (
-      id TEXT PRIMARY KEY,
+      row_no INTEGER PRIMARY KEY,
       clinic_id TEXT NOT NULL REFERENCES clinics (id),
-      created_at TEXT NOT NULL,
-      created_by TEXT NOT NULL,
-      name TEXT NOT NULL,
-      source TEXT NOT NULL,
-      measured_at TEXT,
-      relative_uncertainty REAL,
-      note TEXT NOT NULL,
-      wavelengths_nm TEXT NOT NULL,
-      absorptions_per_cm TEXT NOT NULL
+      entry_seq INTEGER NOT NULL,
+      id TEXT NOT NULL,
+      version INTEGER NOT NULL,
+      parent_id TEXT,
+      at_ms INTEGER,
+      recorded_at TEXT NOT NULL,
+      content TEXT NOT NULL,
+      UNIQUE (id, version)
     ) STRICT;
-    CREATE INDEX own_chromophores_by_clinic ON own_chromophores (clinic_id, id);
-    CREATE TRIGGER own_chromophores_are_kept BEFORE DELETE ON own_chromophores
-      BEGIN SELECT raise(ABORT, 'spectra are never deleted'); END;
-    CREATE TRIGGER own_chromophores_stay BEFORE UPDATE ON own_chromophores
-      BEGIN SELECT raise(ABORT, 'spectra are never changed'); END;
+    CREATE INDEX own_chromophores_by_clinic ON own_chromophores (clinic_id, id, version);
+    CREATE TRIGGER own_chromophores_never_changed BEFORE UPDATE ON own_chromophores
+      BEGIN SELECT RAISE(ABORT, 'own_chromophores is append-only'); END;
+    CREATE TRIGGER own_chromophores_never_deleted BEFORE DELETE ON own_chromophores
+      BEGIN SELECT RAISE(ABORT, 'own_chromophores is append-only'); END;
   `,
 };

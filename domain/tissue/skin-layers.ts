@@ -38,8 +38,8 @@ export function skinLayers(
 ): OpticalLayer[] {
   const { chromophores } = reference;
   const waterPerCm = absorptionOf(chromophores, 'water', wavelengthNm);
-  const bloodlessPerCm = absorptionOf(chromophores, 'bloodless-skin', wavelengthNm, remarks);
   const melanosomePerCm = absorptionOf(chromophores, 'melanosome', wavelengthNm, remarks);
+  const bloodlessPerCm = absorptionOf(chromophores, 'bloodless-skin', wavelengthNm, remarks);
   const bloodPerCm = skinBloodAbsorptionPerCm(wavelengthNm, skin, reference, remarks);
   const flatBloodPerCm = bloodPerCm * flatteningFactor(bloodPerCm, skin.backgroundVesselRadiusUm);
   const { melanosomeFraction: melanin, bloodFraction: blood } = skin;

@@ -1,5 +1,6 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { withOwnChromophore } from '../../server/api/chromophores/chromophores.store.js';
+import { verifyChain } from '../../server/audit/verify.js';
 import { openTestService } from '../support/service.js';
 
 let service: Awaited<ReturnType<typeof openTestService>>;
@@ -45,8 +46,8 @@ describe("a clinic's own chromophores", () => {
     const { items } = (await service.get(`${path}?limit=500`, 'reader', 'south').expect(200)).body;
     expect(items.map((item: { id: string }) => item.id)).not.toContain(id);
     const { db, reference } = service.parts;
-    expect(withOwnChromophore(db, reference, 'south', id)).toBe(reference);
-    expect(withOwnChromophore(db, reference, 'north', id).chromophores.get(id)!.name).toBe(ink.name);
+    expect(withOwnChromophore({ db, clinicId: 'south' }, reference, id)).toBe(reference);
+    expect(withOwnChromophore({ db, clinicId: 'north' }, reference, id).chromophores.get(id)!.name).toBe(ink.name);
     expect(reference.chromophores.has(id)).toBe(false);
   });
 
@@ -72,8 +73,17 @@ describe("a clinic's own chromophores", () => {
   it('are never changed or deleted', async () => {
     const { id } = (await service.post(path, ink, 'physicist').expect(201)).body.item;
     const { db } = service.parts;
-    expect(() => db.prepare('UPDATE own_chromophores SET name = ? WHERE id = ?').run('other', id)).toThrow(/never changed/);
-    expect(() => db.prepare('DELETE FROM own_chromophores WHERE id = ?').run(id)).toThrow(/never deleted/);
+    expect(() => db.prepare('UPDATE own_chromophores SET content = ? WHERE id = ?').run('{}', id)).toThrow(/append-only/);
+    expect(() => db.prepare('DELETE FROM own_chromophores WHERE id = ?').run(id)).toThrow(/append-only/);
+  });
+
+  it("leave an entry in the clinic's chain, which verifies", async () => {
+    const before = await verifyChain(service.parts.db, 'north');
+    await service.post(path, ink, 'physicist').expect(201);
+    const after = await verifyChain(service.parts.db, 'north');
+    expect(after.ok).toBe(true);
+    expect(after.entries).toBe(before.entries + 1);
+    expect(after.rows).toBe(before.rows + 1);
   });
 
   it('are stored once for one Idempotency-Key', async () => {

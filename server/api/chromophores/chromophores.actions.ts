@@ -13,7 +13,7 @@ import { spectrumRangeNm } from '../../../domain/spectra/spectrum.js';
 import { resolveSkin } from '../../../domain/tissue/skin.js';
 import { skinLayers } from '../../../domain/tissue/skin-layers.js';
 import { solveLight } from '../../../domain/transport/layered-solver.js';
-import type { Db } from '../../db/database.js';
+import type { Ledger } from '../../audit/with-audit.js';
 import { faultOf } from '../../http/query-faults.js';
 import { type Fault, RequestError } from '../../http/request-error.js';
 import { skinOf } from '../../schemas/skin-query.js';
@@ -37,25 +37,16 @@ export function findChromophore({ chromophores }: ReferenceData, id: string): Ch
 const mostOwn = 1000;
 
 export function storeOwnChromophore(
-  { db, now }: { readonly db: Db; readonly now: () => Date },
+  ledger: Ledger,
   { keyId, clinicId }: { readonly keyId: string; readonly clinicId: string },
   body: z.output<typeof OwnChromophoreRequest>,
 ): OwnChromophore {
-  if (countOwnChromophores(db, clinicId) >= mostOwn)
-    throw new RequestError('conflict', `The clinic has ${mostOwn} spectra of its own, as many as it may have.`);
-  const { measuredAt = null, relativeUncertainty = null, note = '', ...given } = body;
-  const own = {
-    id: uuidv7(),
-    clinicId,
-    createdAt: now().toISOString(),
-    createdBy: keyId,
-    measuredAt,
-    relativeUncertainty,
-    note,
-    ...given,
-  };
-  insertOwnChromophore(db, own);
-  return own;
+  const id = uuidv7();
+  return ledger.change({ clinicId, actor: { keyId }, kind: 'chromophore.stored', subject: id }, (writer) => {
+    if (countOwnChromophores(writer) >= mostOwn)
+      throw new RequestError('conflict', `The clinic has ${mostOwn} spectra of its own, as many as it may have.`);
+    return insertOwnChromophore(writer, id, body);
+  });
 }
 
 interface Range {

@@ -26,8 +26,9 @@ export function presentChromophore(chromophore: Chromophore, { alternatives, bib
 }
 
 export function presentOwnChromophore(own: OwnChromophore, reference: ReferenceData) {
-  const { createdAt, measuredAt, relativeUncertainty } = own;
-  return { ...presentChromophore(chromophoreOfOwn(own), reference), own: { createdAt, measuredAt, relativeUncertainty } };
+  const { measuredAt = null, relativeUncertainty = null } = own.content;
+  const shared = presentChromophore(chromophoreOfOwn(own), reference);
+  return { ...shared, own: { createdAt: own.recordedAt, measuredAt, relativeUncertainty } };
 }
 
 interface Columns {

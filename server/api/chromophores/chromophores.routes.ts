@@ -1,6 +1,7 @@
 import type { FastifyRequest } from 'fastify';
 import { z } from 'zod';
 import { withHemoglobinTable } from '../../../domain/reference/choose-hemoglobin.js';
+import { openLedger } from '../../audit/with-audit.js';
 import { actorOf, clinicOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { presentCalculation } from '../../http/calculation.js';
@@ -38,8 +39,9 @@ const spectrumResponse = {
 export function registerChromophoresRoutes(app: App, parts: Parts): void {
   const reference = withHemoglobinTable(parts.reference, 'prahl1998');
   const version = `${parts.dataVersion.sha256} ${modelVersion}`;
-  const referenceFor = (request: FastifyRequest, id: string) =>
-    withOwnChromophore(parts.db, reference, actorOf(request).clinicId, id);
+  const ledger = openLedger(parts.db, parts.now);
+  const readerFor = (request: FastifyRequest) => ledger.reader(actorOf(request).clinicId);
+  const referenceFor = (request: FastifyRequest, id: string) => withOwnChromophore(readerFor(request), reference, id);
   const config = { role: 'reader' as const };
   const tags = ['reference data'];
   const published = [...reference.chromophores.values()].map((chromophore, place) => ({
@@ -54,16 +56,16 @@ export function registerChromophoresRoutes(app: App, parts: Parts): void {
     },
     async (request, reply) => {
       const { limit = defaultLimit, cursor } = request.query;
-      const { clinicId } = actorOf(request);
+      const reader = readerFor(request);
       const start = decodePlace(cursor);
       const shared = published.slice(start, start + limit + 1);
       const offset = Math.max(0, start - published.length);
-      const own = listOwnChromophores(parts.db, clinicId, offset, limit + 1 - shared.length).map((row, i) => ({
+      const own = listOwnChromophores(reader, offset, limit + 1 - shared.length).map((row, i) => ({
         ...presentOwnChromophore(row, reference),
         place: published.length + offset + i,
       }));
       const page = pageOf(request, reply, [...shared, ...own], limit, ({ place }) => [place]);
-      return sendCacheable(request, reply, `${version} ${clinicId} ${countOwnChromophores(parts.db, clinicId)}`, bannered(page));
+      return sendCacheable(request, reply, `${version} ${reader.clinicId} ${countOwnChromophores(reader)}`, bannered(page));
     },
   );
   app.post(
@@ -79,7 +81,7 @@ export function registerChromophoresRoutes(app: App, parts: Parts): void {
     },
     async (request, reply) => {
       const actor = { ...actorOf(request), clinicId: clinicOf(request) };
-      const item = presentOwnChromophore(storeOwnChromophore(parts, actor, request.body), reference);
+      const item = presentOwnChromophore(storeOwnChromophore(ledger, actor, request.body), reference);
       return reply.code(201).header('location', `/v1/chromophores/${item.id}`).send(bannered({ item }));
     },
   );
@@ -91,10 +93,10 @@ export function registerChromophoresRoutes(app: App, parts: Parts): void {
     },
     async (request, reply) => {
       const { id } = request.params;
-      const { clinicId } = actorOf(request);
-      const own = reference.chromophores.has(id) ? undefined : findOwnChromophore(parts.db, clinicId, id);
+      const reader = readerFor(request);
+      const own = reference.chromophores.has(id) ? null : findOwnChromophore(reader, id);
       const item = own ? presentOwnChromophore(own, reference) : presentChromophore(findChromophore(reference, id), reference);
-      return sendCacheable(request, reply, `${version} ${clinicId}`, bannered({ item }));
+      return sendCacheable(request, reply, `${version} ${reader.clinicId}`, bannered({ item }));
     },
   );
   app.get(

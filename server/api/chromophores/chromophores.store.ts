@@ -1,65 +1,48 @@
 import type { ReferenceData } from '../../../domain/reference/reference-data.js';
 import type { Chromophore } from '../../../domain/spectra/chromophore.js';
-import type { Db } from '../../db/database.js';
+import { findRecord, insertRecord, type StoredRecord } from '../../audit/records.js';
+import type { Writer } from '../../audit/with-audit.js';
+import { prepared } from '../../db/prepared.js';
+import type { Reader } from '../../db/reader.js';
 
-/** A clinic's own measured spectrum. Kept as it was measured; never changed or deleted. */
-export interface OwnChromophore {
-  readonly id: string;
-  readonly clinicId: string;
-  readonly createdAt: string;
-  readonly createdBy: string;
+/** A clinic's own measured spectrum, as it was given. */
+export interface OwnSpectrum {
   readonly name: string;
   readonly source: string;
-  readonly measuredAt: string | null;
-  readonly relativeUncertainty: number | null;
-  readonly note: string;
+  readonly measuredAt?: string | undefined;
+  readonly relativeUncertainty?: number | undefined;
+  readonly note?: string | undefined;
   readonly wavelengthsNm: readonly number[];
   readonly absorptionsPerCm: readonly number[];
 }
 
-type Row = Omit<OwnChromophore, 'wavelengthsNm' | 'absorptionsPerCm'> & {
-  readonly wavelengthsNm: string;
-  readonly absorptionsPerCm: string;
-};
+export type OwnChromophore = StoredRecord<OwnSpectrum>;
 
-const columns = `id, clinic_id AS clinicId, created_at AS createdAt, created_by AS createdBy, name, source, measured_at AS measuredAt,
-  relative_uncertainty AS relativeUncertainty, note, wavelengths_nm AS wavelengthsNm, absorptions_per_cm AS absorptionsPerCm`;
+const table = 'own_chromophores';
 
-const read = (row: Row): OwnChromophore => ({
-  ...row,
-  wavelengthsNm: JSON.parse(row.wavelengthsNm) as number[],
-  absorptionsPerCm: JSON.parse(row.absorptionsPerCm) as number[],
-});
-
-export function insertOwnChromophore(db: Db, chromophore: OwnChromophore): void {
-  db.prepare(
-    `INSERT INTO own_chromophores (id, clinic_id, created_at, created_by, name, source, measured_at, relative_uncertainty, note,
-       wavelengths_nm, absorptions_per_cm)
-     VALUES (@id, @clinicId, @createdAt, @createdBy, @name, @source, @measuredAt, @relativeUncertainty, @note,
-       @wavelengthsNm, @absorptionsPerCm)`,
-  ).run({
-    ...chromophore,
-    wavelengthsNm: JSON.stringify(chromophore.wavelengthsNm),
-    absorptionsPerCm: JSON.stringify(chromophore.absorptionsPerCm),
-  });
+export function insertOwnChromophore(writer: Writer, id: string, content: OwnSpectrum): OwnChromophore {
+  return insertRecord(writer, table, { id, content });
 }
 
-export function findOwnChromophore(db: Db, clinicId: string | null, id: string): OwnChromophore | undefined {
-  const row = db.prepare(`SELECT ${columns} FROM own_chromophores WHERE id = ? AND clinic_id = ?`).get(id, clinicId);
-  return row === undefined ? undefined : read(row as Row);
+export function findOwnChromophore(reader: Reader, id: string): OwnChromophore | null {
+  return findRecord<OwnSpectrum>(reader, table, id);
 }
 
 /** A clinic's own, in the order they were made, after the first `offset`. */
-export function listOwnChromophores(db: Db, clinicId: string | null, offset: number, count: number): OwnChromophore[] {
-  const statement = db.prepare(`SELECT ${columns} FROM own_chromophores WHERE clinic_id = ? ORDER BY id LIMIT ? OFFSET ?`);
-  return (statement.all(clinicId, count, offset) as Row[]).map(read);
+export function listOwnChromophores({ db, clinicId }: Reader, offset: number, count: number): OwnChromophore[] {
+  const sql = `SELECT id, version, parent_id AS parentId, at_ms AS atMs, recorded_at AS recordedAt, content FROM ${table}
+    WHERE clinic_id = ? ORDER BY id LIMIT ? OFFSET ?`;
+  const rows = prepared(db, sql).all(clinicId, count, offset) as (Omit<OwnChromophore, 'content'> & { content: string })[];
+  return rows.map((row) => ({ ...row, content: JSON.parse(row.content) as OwnSpectrum }));
 }
 
-export function countOwnChromophores(db: Db, clinicId: string | null): number {
-  return db.prepare('SELECT count(*) FROM own_chromophores WHERE clinic_id = ?').pluck().get(clinicId) as number;
+export function countOwnChromophores({ db, clinicId }: Reader): number {
+  const row = prepared(db, `SELECT count(*) AS count FROM ${table} WHERE clinic_id = ?`).get(clinicId);
+  return (row as { count: number }).count;
 }
 
-export function chromophoreOfOwn({ id, name, source, note, wavelengthsNm, absorptionsPerCm }: OwnChromophore): Chromophore {
+export function chromophoreOfOwn({ id, content }: OwnChromophore): Chromophore {
+  const { name, source, note = '', wavelengthsNm, absorptionsPerCm } = content;
   return {
     id,
     name,
@@ -74,9 +57,9 @@ export function chromophoreOfOwn({ id, name, source, note, wavelengthsNm, absorp
 }
 
 /** Reference data in which the clinic's own spectrum of this id stands too, so that a calculation can name it; unchanged for any other id. */
-export function withOwnChromophore(db: Db, reference: ReferenceData, clinicId: string | null, id: string): ReferenceData {
+export function withOwnChromophore(reader: Reader, reference: ReferenceData, id: string): ReferenceData {
   if (reference.chromophores.has(id)) return reference;
-  const own = findOwnChromophore(db, clinicId, id);
+  const own = findOwnChromophore(reader, id);
   if (!own) return reference;
   return { ...reference, chromophores: new Map([...reference.chromophores, [id, chromophoreOfOwn(own)]]) };
 }
