@@ -3,6 +3,7 @@ import fastify from 'fastify';
 import { serializerCompiler, type ZodTypeProvider } from 'fastify-type-provider-zod';
 import { uuidv7 } from 'uuidv7';
 import { registerChromophoresRoutes } from './api/chromophores/chromophores.routes.js';
+import { registerClinicsRoutes } from './api/clinics/clinics.routes.js';
 import { registerExposureRoutes } from './api/exposure/exposure.routes.js';
 import { registerKeysRoutes } from './api/keys/keys.routes.js';
 import { openKeyStore } from './api/keys/keys.store.js';
@@ -60,6 +61,7 @@ export async function buildApp(parts: Parts, addBeside: (app: App) => void = () 
   await installOpenApi(app);
 
   registerServiceRoutes(app, parts);
+  registerClinicsRoutes(app, parts);
   registerKeysRoutes(app, parts, keys);
   registerThermalRoutes(app, parts);
   registerLightRoutes(app, parts);
