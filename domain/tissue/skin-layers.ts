@@ -1,4 +1,5 @@
 import { Remarks } from '../quantities/caution.js';
+import { DomainError } from '../quantities/errors.js';
 import { bloodAbsorptionPerCm, type HemoglobinTable, type WholeBloodTable } from '../spectra/blood.js';
 import { absorptionOf, type Chromophores, chromophoreOf } from '../spectra/chromophore.js';
 import { spectrumRangeNm } from '../spectra/spectrum.js';
@@ -36,6 +37,7 @@ export function skinLayers(
   reference: TissueReference,
   remarks: Remarks = new Remarks(),
 ): OpticalLayer[] {
+  assertDescribed(wavelengthNm);
   const { chromophores } = reference;
   const waterPerCm = absorptionOf(chromophores, 'water', wavelengthNm);
   const melanosomePerCm = absorptionOf(chromophores, 'melanosome', wavelengthNm, remarks);
@@ -58,6 +60,23 @@ export function skinLayers(
     layer('dermis', skin.dermisThicknessUm, dermisPerCm, wavelengthNm, skin, reference.skin, remarks),
     layer('fat', skin.fatThicknessUm, fatPerCm, wavelengthNm, skin, reference.skin, remarks),
   ];
+}
+
+const describedFromNm = 350; // start of the laws of Jacques1998 for melanosomes and bloodless skin
+const describedToNm = 12_000; // end of the water table
+
+function assertDescribed(wavelengthNm: number): void {
+  if (wavelengthNm >= describedFromNm && wavelengthNm <= describedToNm) return;
+  throw new DomainError(
+    'out-of-range',
+    `wavelengthNm is ${wavelengthNm}; skin by its pigmentation is known from ${describedFromNm} to ${describedToNm} nm, outside give explicit layers`,
+    {
+      quantity: 'wavelengthNm',
+      value: Number.isFinite(wavelengthNm) ? wavelengthNm : String(wavelengthNm),
+      min: describedFromNm,
+      max: describedToNm,
+    },
+  );
 }
 
 function lipidPerCm(chromophores: Chromophores, wavelengthNm: number, remarks: Remarks): number {

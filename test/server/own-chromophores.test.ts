@@ -27,6 +27,7 @@ describe("a clinic's own chromophores", () => {
     expect(item).toMatchObject({ name: ink.name, unit: '1/cm', fromNm: 500, toNm: 900, points: 3 });
     expect(item.sources).toEqual([{ key: 'own', citation: ink.source }]);
     expect(item.own.relativeUncertainty).toBe(0.1);
+    expect(item.spread).toEqual({ factor: 1.2, fromNm: 500, toNm: 900 });
     expect((await service.get(`${path}/${item.id}`).expect(200)).body.item).toEqual(item);
     const listed = (await service.get(`${path}?limit=500`).expect(200)).body.items;
     expect(listed.at(-1)).toEqual(item);

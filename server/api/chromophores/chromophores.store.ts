@@ -42,7 +42,8 @@ export function countOwnChromophores({ db, clinicId }: Reader): number {
 }
 
 export function chromophoreOfOwn({ id, content }: OwnChromophore): Chromophore {
-  const { name, source, note = '', wavelengthsNm, absorptionsPerCm } = content;
+  const { name, source, note = '', relativeUncertainty = 0, wavelengthsNm, absorptionsPerCm } = content;
+  const [fromNm, toNm] = [wavelengthsNm[0]!, wavelengthsNm[wavelengthsNm.length - 1]!];
   return {
     id,
     name,
@@ -53,6 +54,7 @@ export function chromophoreOfOwn({ id, content }: OwnChromophore): Chromophore {
     sources: [source],
     status: 'read',
     note,
+    ...(relativeUncertainty > 0 ? { spread: { factor: 1 + 2 * relativeUncertainty, fromNm, toNm } } : {}), // k = 2
   };
 }
 

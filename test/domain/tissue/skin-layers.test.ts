@@ -68,7 +68,7 @@ describe('layers of skin', () => {
   });
 
   it.each([200, 349, 12_001, Number.NaN])('refuse %d nm', (nm) => {
-    expect(() => layersOf({ phototype: 'II' }, nm)).toThrow(/must|holds|reaches/);
+    expect(() => layersOf({ phototype: 'II' }, nm)).toThrow(/from 350 to 12000 nm, outside give explicit layers/);
   });
 
   it('absorb more in the epidermis the darker the skin, and no more below it', () => {
