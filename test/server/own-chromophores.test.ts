@@ -52,6 +52,36 @@ describe("a clinic's own chromophores", () => {
     expect(reference.chromophores.has(id)).toBe(false);
   });
 
+  it("stand as chromophoreId in that clinic's calculations alone", async () => {
+    const { id } = (await service.post(path, ink, 'physicist').expect(201)).body.item;
+    const body = {
+      skin: { phototype: 'II' },
+      target: { kind: 'dermal-pigment', granuleDiameterUm: 1, depthMm: 0.5, chromophoreId: id },
+      wavelengthNm: 694.3,
+      spot: { shape: 'circle', diameterMm: 4 },
+      pulse: { durationS: 2e-8 },
+    };
+    const window = '/v1/calculations/window';
+    const { targetThresholdJPerCm2 } = (await service.post(window, body).expect(200)).body.result;
+    expect(targetThresholdJPerCm2).toBeGreaterThan(0);
+    const thin = { ...ink, absorptionsPerCm: ink.absorptionsPerCm.map((value) => value / 2) };
+    const other = (await service.post(path, thin, 'physicist').expect(201)).body.item.id;
+    const thinner = { ...body, target: { ...body.target, chromophoreId: other } };
+    expect((await service.post(window, thinner).expect(200)).body.result.targetThresholdJPerCm2).toBeGreaterThan(
+      targetThresholdJPerCm2,
+    );
+    const { wavelengthNm, spot, pulse, ...question } = body;
+    const ranking = {
+      ...question,
+      spot,
+      candidates: { wavelengthsNm: [wavelengthNm, 755] },
+      pulseDurationsS: [pulse.durationS],
+    };
+    expect((await service.post('/v1/rankings', ranking).expect(200)).body.result.considered).toBe(2);
+    await service.post(window, body, 'reader', 'south').expect(422);
+    await service.post('/v1/rankings', ranking, 'reader', 'south').expect(422);
+  });
+
   it('change the ETag of the list', async () => {
     const before = (await service.get(path).expect(200)).headers.etag!;
     await service.post(path, ink, 'physicist').expect(201);

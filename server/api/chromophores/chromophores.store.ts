@@ -1,7 +1,9 @@
 import type { ReferenceData } from '../../../domain/reference/reference-data.js';
 import type { Chromophore } from '../../../domain/spectra/chromophore.js';
+import type { Target } from '../../../domain/targets/target.js';
 import { findRecord, insertRecord, type StoredRecord } from '../../audit/records.js';
 import type { Writer } from '../../audit/with-audit.js';
+import type { Db } from '../../db/database.js';
 import { prepared } from '../../db/prepared.js';
 import type { Reader } from '../../db/reader.js';
 
@@ -56,6 +58,16 @@ export function chromophoreOfOwn({ id, content }: OwnChromophore): Chromophore {
     note,
     ...(relativeUncertainty > 0 ? { spread: { factor: 1 + 2 * relativeUncertainty, fromNm, toNm } } : {}), // k = 2
   };
+}
+
+/** The same parts, with the clinic's own spectrum in the reference data where a target names it. */
+export function withTargetChromophore<P extends { readonly db: Db; readonly reference: ReferenceData }>(
+  parts: P,
+  clinicId: string | null,
+  target: Target,
+): P {
+  if (target.kind !== 'dermal-pigment') return parts;
+  return { ...parts, reference: withOwnChromophore({ db: parts.db, clinicId }, parts.reference, target.chromophoreId) };
 }
 
 /** Reference data in which the clinic's own spectrum of this id stands too, so that a calculation can name it; unchanged for any other id. */

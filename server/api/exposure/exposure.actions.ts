@@ -15,11 +15,13 @@ import { thermalDamageTimeS } from '../../../domain/thermal/thermal-damage-time.
 import { resolveSkin } from '../../../domain/tissue/skin.js';
 import { lightErrorFraction } from '../../../domain/transport/light-error.js';
 import type { Parts } from '../../parts.js';
+import { withTargetChromophore } from '../chromophores/chromophores.store.js';
 import type { HeatingRequest, WindowRequest } from './exposure.schema.js';
 
 type Setting = z.output<typeof WindowRequest>;
 
-function prepare(body: Setting, parts: Parts) {
+function prepare(body: Setting, shared: Parts, clinicId: string | null) {
+  const parts = withTargetChromophore(shared, clinicId, body.target);
   const remarks = new Remarks();
   const { reference } = parts;
   const skin = resolveSkin(body.skin, reference.skin, remarks);
@@ -49,8 +51,8 @@ function prepare(body: Setting, parts: Parts) {
   return { remarks, model, deposit, heat };
 }
 
-export function findWindow(body: Setting, parts: Parts) {
-  const { remarks, model, deposit, heat } = prepare(body, parts);
+export function findWindow(body: Setting, parts: Parts, clinicId: string | null) {
+  const { remarks, model, deposit, heat } = prepare(body, parts, clinicId);
   const breakdownFluence = Math.min(
     ...emissionIntervals(body.pulse).map(
       ({ startS, endS, energyFraction }) => (breakdownIrradianceWPerCm2(endS - startS) * (endS - startS)) / energyFraction,
@@ -85,8 +87,8 @@ function damageTime({ target, remarks }: ExposureModel): { thermalDamageTimeS?: 
   return { thermalDamageTimeS: time };
 }
 
-export function heat(body: z.output<typeof HeatingRequest>, parts: Parts) {
-  const { remarks, model, deposit, heat: plan } = prepare(body, parts);
+export function heat(body: z.output<typeof HeatingRequest>, parts: Parts, clinicId: string | null) {
+  const { remarks, model, deposit, heat: plan } = prepare(body, parts, clinicId);
   const { timesS, places, vaporization } = heatingOf(model, deposit, plan, body.fluenceJPerCm2);
   if (vaporization.expected) {
     remarks.caution(

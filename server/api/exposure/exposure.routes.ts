@@ -1,3 +1,4 @@
+import { actorOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { presentCalculation } from '../../http/calculation.js';
 import { calculationReplies } from '../../http/replies.js';
@@ -19,7 +20,7 @@ export function registerExposureRoutes(app: App, parts: Parts): void {
         response: calculationReplies(WindowResult),
       },
     },
-    async (request) => presentCalculation(findWindow(request.body, parts), parts),
+    async (request) => presentCalculation(findWindow(request.body, parts, actorOf(request).clinicId), parts),
   );
   app.post(
     '/v1/calculations/heating',
@@ -32,6 +33,6 @@ export function registerExposureRoutes(app: App, parts: Parts): void {
         response: calculationReplies(HeatingResult),
       },
     },
-    async (request) => presentCalculation(heat(request.body, parts), parts),
+    async (request) => presentCalculation(heat(request.body, parts, actorOf(request).clinicId), parts),
   );
 }

@@ -16,6 +16,7 @@ import { type ExposureQuestion, moveInputs, uncertainInputs } from '../../../dom
 import { resolveSkin } from '../../../domain/tissue/skin.js';
 import { RequestError } from '../../http/request-error.js';
 import type { Parts } from '../../parts.js';
+import { withTargetChromophore } from '../chromophores/chromophores.store.js';
 import { presentRanked } from './rankings.present.js';
 import type { RankingRequest } from './rankings.schema.js';
 
@@ -25,7 +26,8 @@ const usualLimit = 50;
 const usualSeed = 1;
 const mostCandidates = 20_000;
 
-export function rank(body: Body, parts: Parts) {
+export function rank(body: Body, shared: Parts, clinicId: string | null) {
+  const parts = withTargetChromophore(shared, clinicId, body.target);
   const remarks = new Remarks();
   const { reference } = parts;
   const skin = resolveSkin(body.skin, reference.skin, remarks);

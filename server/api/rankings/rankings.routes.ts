@@ -1,3 +1,4 @@
+import { actorOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { presentCalculation } from '../../http/calculation.js';
 import { calculationReplies } from '../../http/replies.js';
@@ -17,6 +18,6 @@ export function registerRankingsRoutes(app: App, parts: Parts): void {
         response: calculationReplies(RankingResult),
       },
     },
-    async (request) => presentCalculation(rank(request.body, parts), parts),
+    async (request) => presentCalculation(rank(request.body, parts, actorOf(request).clinicId), parts),
   );
 }
