@@ -1,4 +1,4 @@
-import { collectDefaultMetrics, Histogram } from 'prom-client';
+import { Counter, collectDefaultMetrics, Gauge, Histogram } from 'prom-client';
 import { z } from 'zod';
 import type { App } from '../../http/app-type.js';
 import { preferredType } from '../../http/hooks.js';
@@ -69,6 +69,29 @@ function registerMetrics(app: App, parts: Parts): void {
     labelNames: ['method', 'route', 'status'],
     buckets: [0.001, 0.005, 0.02, 0.1, 0.5, 2, 10],
     registers: [registers],
+  });
+  const fields = parts.lightFields;
+  for (const [name, help, read] of [
+    ['light_field_hits_total', 'Light fields found solved', () => fields.hitCount],
+    ['light_field_misses_total', 'Light fields solved anew', () => fields.missCount],
+  ] as const) {
+    new Counter({
+      name,
+      help,
+      registers: [registers],
+      collect() {
+        this.reset();
+        this.inc(read());
+      },
+    });
+  }
+  new Gauge({
+    name: 'light_fields',
+    help: 'Solved light fields in store',
+    registers: [registers],
+    collect() {
+      this.set(fields.size);
+    },
   });
   app.addHook('onResponse', (request, reply, done) => {
     const route = request.routeOptions.url ?? 'unknown';
