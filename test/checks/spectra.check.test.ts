@@ -1,4 +1,4 @@
 import { gateTopic } from '../support/gate.js';
 import { solvers } from './solvers/spectra.js';
 
-gateTopic('spectra', solvers, 143);
+gateTopic('spectra', solvers, 149);

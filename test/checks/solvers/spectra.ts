@@ -83,6 +83,7 @@ export const solvers: Record<string, (inputs: Inputs) => number> = {
   'wavelength of the red minimum of oxyhemoglobin': redMinimumNm,
   'red minimum of oxyhemoglobin': redMinimum,
   'oxyhemoglobin over its red minimum': ({ wavelengthNm }) => extinction('oxyhemoglobin', wavelengthNm) / redMinimum(),
+  'wavelength of a hemoglobin band': (inputs) => wavelengthOfGreatest((nm) => extinction(inputs.chromophoreId, nm), inputs),
   'absorption of a melanosome': ({ chromophoreId, wavelengthNm }) => absorption(chromophoreId, wavelengthNm),
   'absorption of water, another table': water,
   'absorption of water, its own source': water,
