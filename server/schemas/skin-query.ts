@@ -3,7 +3,7 @@ import { instant, queryQuantity, text } from './numbers.js';
 import { hasOnePigmentForm } from './skin.js';
 
 /** The scalar fields of the skin as query parameters. */
-export const skinQueryFields = {
+const skinQueryFields = {
   phototype: z.enum(['I', 'II', 'III', 'IV', 'V', 'VI'], { error: 'must be one of I, II, III, IV, V, VI' }).optional(),
   itaDegrees: queryQuantity('degrees', -90, 90, 'Individual typology angle').optional(),
   lightnessL: queryQuantity('', 0, 100, 'CIE L*, with yellownessB').optional(),
