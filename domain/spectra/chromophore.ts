@@ -25,7 +25,7 @@ const naturalFromDecadic = Math.LN10;
 export const wholeBloodHemoglobinGPerL = 150;
 
 /** Molar mass by which mass concentrations of a chromophore become molar; null where none is defined. */
-export function molarMassGPerMol(id: string): number | null {
+function molarMassGPerMol(id: string): number | null {
   if (id.includes('hemoglobin')) return hemoglobinMolarMassGPerMol;
   if (id === 'bilirubin') return 584.66; // C33H36N4O6, from atomic weights
   if (id === 'beta-carotene') return 536.87; // C40H56, from atomic weights

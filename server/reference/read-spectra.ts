@@ -78,7 +78,7 @@ function readLaw(parsed: ParsedDataFile, form: string | undefined, field: (key: 
   throw new DataError(parsed.file, null, `form '${form ?? ''}' is not table, power-law or exponential`);
 }
 
-export function ascending(parsed: ParsedDataFile, column: string): Float64Array {
+function ascending(parsed: ParsedDataFile, column: string): Float64Array {
   let previous = 0;
   return Float64Array.from(parsed.rows, (row) => {
     const value = numberIn(parsed, row, column, 100, 1e6);
