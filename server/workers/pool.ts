@@ -23,6 +23,9 @@ export function openPhotonPool(threads: number): PhotonPool {
     idleTimeout: idleMs,
     execArgv: uncompiled ? ['--import', pathToFileURL(createRequire(self).resolve('tsx')).href] : [],
   });
+  // A chunk that ends just as it is aborted reports to nobody; the pool tells that as an error, which without a listener would end the
+  // process. Faults of chunks themselves reach whoever asked for them.
+  piscina.on('error', () => {});
   return {
     threads,
     walkChunk: (task, signal) => piscina.run(task, { signal }),
