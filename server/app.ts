@@ -5,6 +5,7 @@ import { uuidv7 } from 'uuidv7';
 import { registerChromophoresRoutes } from './api/chromophores/chromophores.routes.js';
 import { registerClinicsRoutes } from './api/clinics/clinics.routes.js';
 import { registerExposureRoutes } from './api/exposure/exposure.routes.js';
+import { registerFluenceRoutes } from './api/fluence/fluence.routes.js';
 import { registerKeysRoutes } from './api/keys/keys.routes.js';
 import { openKeyStore } from './api/keys/keys.store.js';
 import { registerLaserMediaRoutes } from './api/laser-media/laser-media.routes.js';
@@ -64,6 +65,7 @@ export async function buildApp(parts: Parts, addBeside: (app: App) => void = () 
   registerClinicsRoutes(app, parts);
   registerKeysRoutes(app, parts, keys);
   registerThermalRoutes(app, parts);
+  registerFluenceRoutes(app, parts);
   registerLightRoutes(app, parts);
   registerExposureRoutes(app, parts);
   registerRankingsRoutes(app, parts);

@@ -1,0 +1,143 @@
+import type { z } from 'zod';
+import { spotAreaCm2 } from '../../../domain/beam/spot-area.js';
+import { type Delivery, deliveredFluence, pulseEnergyForFluenceJ } from '../../../domain/dosimetry/delivered-fluence.js';
+import { combineRelative } from '../../../domain/dosimetry/uncertainty-budget.js';
+import { interactionRegime } from '../../../domain/interaction/regime.js';
+import { Remarks } from '../../../domain/quantities/caution.js';
+import { electricFieldVPerM, photonEnergyEv } from '../../../domain/quantities/light-units.js';
+import { RequestError } from '../../http/request-error.js';
+import type { FluenceRequest, SettingsRequest } from './fluence.schema.js';
+
+type Body = z.output<typeof FluenceRequest>;
+type SettingsBody = z.output<typeof SettingsRequest>;
+
+const coverageFactor = 2; // about 95 %, JCGM100 6.3.3
+
+/** Standard uncertainties that are taken when none are stated, k = 1. */
+const usual = {
+  pulseEnergy: { value: 0.05, source: 'DeviceRepeatability2018', status: 'read-secondary' }, // week-to-week stability of healthy devices
+  spotDiameter: { value: 0.04, source: 'common practice', status: 'convention' },
+  transmission: { value: 0.02, source: 'common practice', status: 'convention' },
+  calibration: { value: 0.1, source: 'IEC60601-2-22', status: 'derived' }, // outer limit of 20 % taken as two standard deviations
+} as const;
+
+function uncertaintyOf(body: Pick<Body, 'relativeUncertainties'>, remarks: Remarks) {
+  const given = body.relativeUncertainties ?? {};
+  return combineRelative(
+    (['pulseEnergy', 'spotDiameter', 'transmission', 'calibration'] as const).map((quantity) => {
+      const stated = given[quantity];
+      const { value, source, status } = usual[quantity];
+      if (stated === undefined) remarks.assume({ name: `relativeUncertainties.${quantity}`, value, source, status });
+      return { quantity, relativeStandard: stated ?? value, sensitivity: quantity === 'spotDiameter' ? -2 : 1 };
+    }),
+  );
+}
+
+/** Emission times of one pulse: their sum, and the greatest share of energy over time. */
+function timing(pulse: Body['pulse'], exposureTimeS: number | undefined): Pick<Delivery, 'emissionS' | 'peakSharePerS'> {
+  if (pulse === undefined || 'durationS' in pulse) {
+    const emissionS = pulse?.durationS ?? exposureTimeS!;
+    return { emissionS, peakSharePerS: 1 / emissionS };
+  }
+  const parts = pulse.subPulses;
+  return {
+    emissionS: parts.reduce((sum, { durationS }) => sum + durationS, 0),
+    peakSharePerS: Math.max(...parts.map(({ durationS, energyFraction }) => energyFraction / durationS)),
+  };
+}
+
+function losses(body: Pick<Body, 'transmissionFraction' | 'calibrationFactor'>, remarks: Remarks) {
+  const filled = (name: 'transmissionFraction' | 'calibrationFactor', text: string): number => {
+    const value = body[name];
+    if (value !== undefined) return value;
+    remarks.assume({ name, value: 1, source: text, status: 'convention' });
+    return 1;
+  };
+  return {
+    transmissionFraction: filled('transmissionFraction', 'no loss was stated'),
+    calibrationFactor: filled('calibrationFactor', 'the display is taken at its word'),
+  };
+}
+
+export function deliver(body: Body) {
+  const remarks = new Remarks();
+  const times = timing(body.pulse, body.exposureTimeS);
+  const pulseEnergyJ = body.pulseEnergyJ ?? body.averagePowerW! * (body.exposureTimeS ?? 1 / body.repetitionRateHz!);
+  const delivered = deliveredFluence({
+    ...times,
+    ...losses(body, remarks),
+    pulseEnergyJ,
+    spot: body.spot,
+    repetitionRateHz: body.repetitionRateHz ?? 0,
+    pulseCount: body.pulseCount ?? 1,
+    overlapFraction: body.overlapFraction ?? 1,
+  });
+  const axial = body.spot.shape === 'gaussian' ? 2 : 1;
+  const regime = interactionRegime(1 / times.peakSharePerS, axial * delivered.irradianceWPerCm2, body.wavelengthNm);
+  if (regime === 'plasma-mediated') {
+    remarks.caution(
+      'plasma',
+      'The irradiance is beyond the threshold of optical breakdown: plasma, shock waves and cavitation, which no thermal model here follows.',
+    );
+  }
+  if (times.emissionS < 1e-11) {
+    remarks.caution(
+      'beyond-thermal-model',
+      'Below about 10 ps the thermal model ends: multiphoton absorption and ionization set the effect.',
+    );
+  }
+  if ((body.pulseCount ?? 1) > 1) {
+    remarks.caution(
+      'cumulative-is-bookkeeping',
+      'Cumulative J/cm2 is bookkeeping, not a biological dose; margins of single pulses do not hold for stacked pulses.',
+    );
+  }
+  const { relativeStandard, budget } = uncertaintyOf(body, remarks);
+  const expanded = coverageFactor * relativeStandard;
+  const result = {
+    ...delivered,
+    electricFieldVPerM: electricFieldVPerM(axial * delivered.irradianceWPerCm2),
+    interactionRegime: regime,
+    photonEnergyEv: photonEnergyEv(body.wavelengthNm),
+    uncertainty: {
+      relativeStandard,
+      coverageFactor,
+      lowJPerCm2: Math.max(0, delivered.fluenceJPerCm2 * (1 - expanded)),
+      highJPerCm2: delivered.fluenceJPerCm2 * (1 + expanded),
+      budget,
+    },
+  };
+  return { result, remarks, body };
+}
+
+export function settle(body: SettingsBody) {
+  if (body.deviceId !== undefined) {
+    throw new RequestError('unknown-reference', 'The device is unknown.', [
+      { pointer: '/deviceId', detail: `unknown device ${body.deviceId}` },
+    ]);
+  }
+  const remarks = new Remarks();
+  const pulseEnergyJ = pulseEnergyForFluenceJ(body.fluenceJPerCm2, { spot: body.spot, ...losses(body, remarks) });
+  const { relativeStandard } = uncertaintyOf(body, remarks);
+  const expanded = coverageFactor * relativeStandard;
+  const reasons: string[] = [];
+  if (body.energyMaxJ === undefined) {
+    remarks.caution('device-limits-unknown', 'No greatest energy was stated: whether the device can deliver this is not judged.');
+  } else if (pulseEnergyJ > body.energyMaxJ) {
+    reasons.push(`not deliverable: ${Number(pulseEnergyJ.toPrecision(4))} J are needed, the device gives ${body.energyMaxJ} J`);
+  }
+  const rate = body.repetitionRateHz;
+  const result = {
+    pulseEnergyJ,
+    panel: {
+      pulseEnergyJ,
+      fluenceJPerCm2: pulseEnergyJ / spotAreaCm2(body.spot),
+      ...(rate === undefined ? {} : { averagePowerW: pulseEnergyJ * rate, repetitionRateHz: rate }),
+    },
+    deliverable: reasons.length === 0,
+    reasons,
+    lowJPerCm2: Math.max(0, body.fluenceJPerCm2 * (1 - expanded)),
+    highJPerCm2: body.fluenceJPerCm2 * (1 + expanded),
+  };
+  return { result, remarks, body };
+}
