@@ -1,5 +1,5 @@
 import rateLimit from '@fastify/rate-limit';
-import fastify from 'fastify';
+import fastify, { LogController } from 'fastify';
 import { serializerCompiler, type ZodTypeProvider } from 'fastify-type-provider-zod';
 import { uuidv7 } from 'uuidv7';
 import { registerChromophoresRoutes } from './api/chromophores/chromophores.routes.js';
@@ -30,7 +30,7 @@ import type { Parts } from './parts.js';
 export async function buildApp(parts: Parts, addBeside: (app: App) => void = () => {}): Promise<App> {
   const app = fastify({
     loggerInstance: parts.log,
-    disableRequestLogging: true,
+    logController: new LogController({ disableRequestLogging: true }),
     genReqId: () => uuidv7(),
     bodyLimit: parts.config.bodyLimitBytes,
     routerOptions: { caseSensitive: true, ignoreTrailingSlash: false, maxParamLength: 200 },
@@ -40,6 +40,7 @@ export async function buildApp(parts: Parts, addBeside: (app: App) => void = () 
     onProtoPoisoning: 'error',
     onConstructorPoisoning: 'error',
   }).withTypeProvider<ZodTypeProvider>();
+  app.removeContentTypeParser('text/plain');
   app.setValidatorCompiler(validatorCompiler);
   app.setSerializerCompiler(serializerCompiler);
   installProblems(app);

@@ -37,6 +37,6 @@ export async function installOpenApi(app: App): Promise<void> {
     uiConfig: { deepLinking: true, docExpansion: 'list', tryItOutEnabled: false, validatorUrl: null },
   });
   app.get('/openapi.json', { schema: { hide: true } }, async (_request, reply) => {
-    return reply.type('application/json; charset=utf-8').serializer(JSON.stringify).send(app.swagger());
+    return reply.type('application/json; charset=utf-8').send(JSON.stringify(app.swagger()));
   });
 }

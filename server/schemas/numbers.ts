@@ -11,7 +11,7 @@ export function quantity(unit: string, min: number, max: number, description: st
     .min(min, { error: expected })
     .max(max, { error: expected })
     .describe(description)
-    .meta({ unit });
+    .meta({ 'x-unit': unit });
 }
 
 /** A whole number with its range. */

@@ -18,7 +18,7 @@ const usual = {
   pulseEnergy: { value: 0.05, source: 'DeviceRepeatability2018', status: 'read-secondary' }, // week-to-week stability of healthy devices
   spotDiameter: { value: 0.04, source: 'common practice', status: 'convention' },
   transmission: { value: 0.02, source: 'common practice', status: 'convention' },
-  calibration: { value: 0.1, source: 'IEC60601-2-22', status: 'derived' }, // outer limit of 20 % taken as two standard deviations
+  calibration: { value: 0.1, source: 'IEC60601', status: 'derived' }, // outer limit of 20 % taken as two standard deviations
 } as const;
 
 function uncertaintyOf(body: Pick<Body, 'relativeUncertainties'>, remarks: Remarks) {
