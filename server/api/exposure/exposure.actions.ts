@@ -20,7 +20,7 @@ import type { HeatingRequest, WindowRequest } from './exposure.schema.js';
 
 type Setting = z.output<typeof WindowRequest>;
 
-function prepare(body: Setting, shared: Parts, clinicId: string | null) {
+export function prepare(body: Setting, shared: Parts, clinicId: string | null) {
   const parts = withTargetChromophore(shared, clinicId, body.target);
   const remarks = new Remarks();
   const { reference } = parts;
@@ -48,17 +48,12 @@ function prepare(body: Setting, shared: Parts, clinicId: string | null) {
     remarks.caution('stacked-pulses', 'Margins of single pulses do not hold for stacked, overlapping or repeated pulses.');
   if (lightErrorFraction(body.spot) > 0.05)
     remarks.caution('narrow-beam', 'The beam is narrower than those the light solver was proved for.');
-  return { remarks, model, deposit, heat };
+  return { remarks, model, deposit, heat, train, reference };
 }
 
 export function findWindow(body: Setting, parts: Parts, clinicId: string | null) {
   const { remarks, model, deposit, heat } = prepare(body, parts, clinicId);
-  const breakdownFluence = Math.min(
-    ...emissionIntervals(body.pulse).map(
-      ({ startS, endS, energyFraction }) => (breakdownIrradianceWPerCm2(endS - startS) * (endS - startS)) / energyFraction,
-    ),
-  );
-  const window = windowOf(model, deposit, heat, breakdownFluence);
+  const window = windowOf(model, deposit, heat, breakdownFluenceJPerCm2(body.pulse));
   const result = {
     ...window,
     relaxationTimeS: model.target.relaxationTimeS,
@@ -68,6 +63,17 @@ export function findWindow(body: Setting, parts: Parts, clinicId: string | null)
     reasons: windowReasons(model, window, 1),
   };
   return { result, remarks, body };
+}
+
+/** Fluence of one pulse at which one of its parts would break the tissue down. */
+export function breakdownFluenceJPerCm2(pulse: Setting['pulse']): number {
+  const parts = emissionIntervals(pulse).map(({ startS, endS, energyFraction }) => ({
+    durationS: endS - startS,
+    energyFraction,
+  }));
+  return Math.min(
+    ...parts.map(({ durationS, energyFraction }) => (breakdownIrradianceWPerCm2(durationS) * durationS) / energyFraction),
+  );
 }
 
 // Extended theory: only where heater and target differ, with the heater held just below boiling.

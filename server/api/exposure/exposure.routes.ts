@@ -4,7 +4,8 @@ import { presentCalculation } from '../../http/calculation.js';
 import { calculationReplies } from '../../http/replies.js';
 import type { Parts } from '../../parts.js';
 import { findWindow, heat } from './exposure.actions.js';
-import { HeatingRequest, HeatingResult, WindowRequest, WindowResult } from './exposure.schema.js';
+import { HeatingRequest, HeatingResult, LadderRequest, LadderResult, WindowRequest, WindowResult } from './exposure.schema.js';
+import { climb } from './ladder.actions.js';
 
 export function registerExposureRoutes(app: App, parts: Parts): void {
   const config = { role: 'reader' as const };
@@ -34,5 +35,18 @@ export function registerExposureRoutes(app: App, parts: Parts): void {
       },
     },
     async (request) => presentCalculation(heat(request.body, parts, actorOf(request).clinicId), parts),
+  );
+  app.post(
+    '/v1/calculations/test-ladder',
+    {
+      config,
+      schema: {
+        tags,
+        summary: 'Steps of fluence for test patches, below the epidermal limit',
+        body: LadderRequest,
+        response: calculationReplies(LadderResult),
+      },
+    },
+    async (request) => presentCalculation(climb(request.body, parts, actorOf(request).clinicId), parts),
   );
 }

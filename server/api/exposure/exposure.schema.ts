@@ -9,7 +9,7 @@ import {
   WavelengthNm,
 } from '../../schemas/beam.js';
 import { reproducible } from '../../schemas/calculation.js';
-import { quantity, whenever } from '../../schemas/numbers.js';
+import { count, quantity, whenever } from '../../schemas/numbers.js';
 import { SkinSchema } from '../../schemas/skin.js';
 import { TargetSchema } from '../../schemas/target.js';
 
@@ -58,6 +58,27 @@ export const HeatingRequest = z
   .refine(trainIsWhole, needsRate)
   .refine(pulseFitsPeriod, fitsPeriod)
   .meta({ id: 'HeatingRequest', examples: [{ ...example, fluenceJPerCm2: 6 }] });
+
+export const LadderRequest = z
+  .strictObject({
+    ...setting,
+    firstFraction: quantity('', 0.05, 0.8, 'First step over the lower bound of the epidermal limit; 0.4 when absent').optional(),
+    steps: count(2, 12, 'Steps; 4 when absent').optional(),
+  })
+  .refine(trainIsWhole, needsRate)
+  .refine(pulseFitsPeriod, fitsPeriod)
+  .meta({ id: 'TestLadderRequest', examples: [example] });
+
+export const LadderResult = z
+  .object({
+    steps: z.array(z.object({ fluenceJPerCm2: z.number(), fractionOfLimit: z.number() })),
+    waitS: z.number().describe('Least wait before the next step is judged'),
+    endPoints: z.array(z.string()),
+    stopRules: z.array(z.string()),
+    epidermalLimitLowJPerCm2: z.number().describe('5 % quantile of the epidermal limit'),
+    targetThresholdJPerCm2: z.number().nullable().describe('Median of the threshold of the target'),
+  })
+  .meta({ id: 'TestLadderResult', description: 'Steps for test patches, never one number to treat at' });
 
 export const limits = ['basal-layer', 'melanosome', 'surface', 'vaporization', 'breakdown'] as const;
 
