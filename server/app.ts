@@ -4,6 +4,7 @@ import { serializerCompiler, type ZodTypeProvider } from 'fastify-type-provider-
 import { uuidv7 } from 'uuidv7';
 import { registerChromophoresRoutes } from './api/chromophores/chromophores.routes.js';
 import { registerClinicsRoutes } from './api/clinics/clinics.routes.js';
+import { registerCoverageRoutes } from './api/coverage/coverage.routes.js';
 import { registerExposureRoutes } from './api/exposure/exposure.routes.js';
 import { registerFluenceRoutes } from './api/fluence/fluence.routes.js';
 import { registerKeysRoutes } from './api/keys/keys.routes.js';
@@ -67,6 +68,7 @@ export async function buildApp(parts: Parts, addBeside: (app: App) => void = () 
   registerKeysRoutes(app, parts, keys);
   registerThermalRoutes(app, parts);
   registerFluenceRoutes(app, parts);
+  registerCoverageRoutes(app, parts);
   registerLightRoutes(app, parts);
   registerExposureRoutes(app, parts);
   registerRankingsRoutes(app, parts);
