@@ -17,6 +17,12 @@ export interface UncertaintyBudget {
 /** First-order uncertainty of a product of uncorrelated powers: the root of the sum of squared contributions.
  *  @source JCGM100 eq. 10 and 12 */
 export function combineRelative(inputs: readonly Omit<BudgetEntry, 'contribution'>[]): UncertaintyBudget {
-  const budget = inputs.map((entry) => ({ ...entry, contribution: Math.abs(entry.sensitivity) * entry.relativeStandard }));
-  return { relativeStandard: Math.sqrt(budget.reduce((sum, { contribution }) => sum + contribution ** 2, 0)), budget };
+  const budget: BudgetEntry[] = [];
+  let variance = 0;
+  for (const { quantity, relativeStandard, sensitivity } of inputs) {
+    const contribution = Math.abs(sensitivity) * relativeStandard;
+    variance += contribution * contribution;
+    budget.push({ quantity, relativeStandard, sensitivity, contribution });
+  }
+  return { relativeStandard: Math.sqrt(variance), budget };
 }

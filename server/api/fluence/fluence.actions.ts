@@ -21,16 +21,21 @@ const usual = {
   calibration: { value: 0.1, source: 'IEC60601', status: 'derived' }, // outer limit of 20 % taken as two standard deviations
 } as const;
 
+const uncertain = (['pulseEnergy', 'spotDiameter', 'transmission', 'calibration'] as const).map((quantity) => ({
+  quantity,
+  sensitivity: quantity === 'spotDiameter' ? -2 : 1,
+  assumption: { name: `relativeUncertainties.${quantity}`, ...usual[quantity] },
+}));
+
 function uncertaintyOf(body: Pick<Body, 'relativeUncertainties'>, remarks: Remarks) {
-  const given = body.relativeUncertainties ?? {};
-  return combineRelative(
-    (['pulseEnergy', 'spotDiameter', 'transmission', 'calibration'] as const).map((quantity) => {
-      const stated = given[quantity];
-      const { value, source, status } = usual[quantity];
-      if (stated === undefined) remarks.assume({ name: `relativeUncertainties.${quantity}`, value, source, status });
-      return { quantity, relativeStandard: stated ?? value, sensitivity: quantity === 'spotDiameter' ? -2 : 1 };
-    }),
-  );
+  const given = body.relativeUncertainties;
+  const inputs: { quantity: string; relativeStandard: number; sensitivity: number }[] = [];
+  for (const { quantity, sensitivity, assumption } of uncertain) {
+    const stated = given?.[quantity];
+    if (stated === undefined) remarks.assume(assumption);
+    inputs.push({ quantity, relativeStandard: stated ?? assumption.value, sensitivity });
+  }
+  return combineRelative(inputs);
 }
 
 /** Emission times of one pulse: their sum, and the greatest share of energy over time. */
@@ -46,17 +51,15 @@ function timing(pulse: Body['pulse'], exposureTimeS: number | undefined): Pick<D
   };
 }
 
-function losses(body: Pick<Body, 'transmissionFraction' | 'calibrationFactor'>, remarks: Remarks) {
-  const filled = (name: 'transmissionFraction' | 'calibrationFactor', text: string): number => {
-    const value = body[name];
-    if (value !== undefined) return value;
-    remarks.assume({ name, value: 1, source: text, status: 'convention' });
-    return 1;
-  };
-  return {
-    transmissionFraction: filled('transmissionFraction', 'no loss was stated'),
-    calibrationFactor: filled('calibrationFactor', 'the display is taken at its word'),
-  };
+const lossless = {
+  transmissionFraction: { name: 'transmissionFraction', value: 1, source: 'no loss was stated', status: 'convention' },
+  calibrationFactor: { name: 'calibrationFactor', value: 1, source: 'the display is taken at its word', status: 'convention' },
+} as const;
+
+function filled(body: Pick<Body, keyof typeof lossless>, name: keyof typeof lossless, remarks: Remarks): number {
+  const value = body[name];
+  if (value === undefined) remarks.assume(lossless[name]);
+  return value ?? 1;
 }
 
 export function deliver(body: Body) {
@@ -64,8 +67,10 @@ export function deliver(body: Body) {
   const times = timing(body.pulse, body.exposureTimeS);
   const pulseEnergyJ = body.pulseEnergyJ ?? body.averagePowerW! * (body.exposureTimeS ?? 1 / body.repetitionRateHz!);
   const delivered = deliveredFluence({
-    ...times,
-    ...losses(body, remarks),
+    emissionS: times.emissionS,
+    peakSharePerS: times.peakSharePerS,
+    transmissionFraction: filled(body, 'transmissionFraction', remarks),
+    calibrationFactor: filled(body, 'calibrationFactor', remarks),
     pulseEnergyJ,
     spot: body.spot,
     repetitionRateHz: body.repetitionRateHz ?? 0,
@@ -95,7 +100,13 @@ export function deliver(body: Body) {
   const { relativeStandard, budget } = uncertaintyOf(body, remarks);
   const expanded = coverageFactor * relativeStandard;
   const result = {
-    ...delivered,
+    fluenceJPerCm2: delivered.fluenceJPerCm2,
+    peakFluenceJPerCm2: delivered.peakFluenceJPerCm2,
+    irradianceWPerCm2: delivered.irradianceWPerCm2,
+    peakPowerW: delivered.peakPowerW,
+    averagePowerW: delivered.averagePowerW,
+    dutyCycleFraction: delivered.dutyCycleFraction,
+    cumulativeFluenceJPerCm2: delivered.cumulativeFluenceJPerCm2,
     electricFieldVPerM: electricFieldVPerM(axial * delivered.irradianceWPerCm2),
     interactionRegime: regime,
     photonEnergyEv: photonEnergyEv(body.wavelengthNm),
@@ -117,7 +128,11 @@ export function settle(body: SettingsBody) {
     ]);
   }
   const remarks = new Remarks();
-  const pulseEnergyJ = pulseEnergyForFluenceJ(body.fluenceJPerCm2, { spot: body.spot, ...losses(body, remarks) });
+  const pulseEnergyJ = pulseEnergyForFluenceJ(body.fluenceJPerCm2, {
+    spot: body.spot,
+    transmissionFraction: filled(body, 'transmissionFraction', remarks),
+    calibrationFactor: filled(body, 'calibrationFactor', remarks),
+  });
   const { relativeStandard } = uncertaintyOf(body, remarks);
   const expanded = coverageFactor * relativeStandard;
   const reasons: string[] = [];
