@@ -80,6 +80,12 @@ function domainRefusal(error: DomainError): Refusal {
   return { code: error.code, detail: error.message, errors, facts: error.facts };
 }
 
+/** The problem that an error is, for replies that have begun. */
+export function problemFor(error: unknown, instance: string): Problem {
+  const refusal = error instanceof Error ? refusalOf(error) : null;
+  return problemOf(refusal?.code ?? 'internal-error', refusal?.detail ?? 'Something failed inside.', instance, refusal?.errors);
+}
+
 export function sendProblem(request: FastifyRequest, reply: FastifyReply, refusal: Refusal): FastifyReply {
   const problem = problemOf(refusal.code, refusal.detail, request.url.split('?')[0] ?? '/', refusal.errors, {
     ...refusal.facts,
