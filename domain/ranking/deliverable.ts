@@ -1,3 +1,4 @@
+import { sameSpot } from '../beam/same-spot.js';
 import { spotAreaCm2 } from '../beam/spot-area.js';
 import type { Candidate } from './candidates.js';
 import type { FluenceWindow } from './fluence-window.js';
@@ -15,7 +16,7 @@ export function obstaclesOf({ line, pulseDurationS, spot }: Candidate, window: F
   ) {
     obstacles.push(`not deliverable: the line emits pulses of ${pulseMinS} to ${pulseMaxS} s`);
   }
-  if (line.spots && !line.spots.some((own) => JSON.stringify(own) === JSON.stringify(spot))) {
+  if (line.spots && !line.spots.some((own) => sameSpot(own, spot))) {
     obstacles.push('not deliverable: the device has no such spot');
   }
   const mostByEnergy = line.energyMaxJ === undefined ? Number.POSITIVE_INFINITY : line.energyMaxJ / spotAreaCm2(spot);

@@ -1,11 +1,15 @@
 import type { z } from 'zod';
+import { sameSpot } from '../../../domain/beam/same-spot.js';
 import { spotAreaCm2 } from '../../../domain/beam/spot-area.js';
 import { type Delivery, deliveredFluence, pulseEnergyForFluenceJ } from '../../../domain/dosimetry/delivered-fluence.js';
 import { combineRelative } from '../../../domain/dosimetry/uncertainty-budget.js';
 import { interactionRegime } from '../../../domain/interaction/regime.js';
 import { Remarks } from '../../../domain/quantities/caution.js';
 import { electricFieldVPerM, photonEnergyEv } from '../../../domain/quantities/light-units.js';
+import type { Reader } from '../../db/reader.js';
 import { RequestError } from '../../http/request-error.js';
+import { pulseEndS } from '../../schemas/beam.js';
+import { deviceLines } from '../devices/devices.store.js';
 import type { FluenceRequest, SettingsRequest } from './fluence.schema.js';
 
 type Body = z.output<typeof FluenceRequest>;
@@ -121,32 +125,27 @@ export function deliver(body: Body) {
   return { result, remarks, body };
 }
 
-export function settle(body: SettingsBody) {
-  if (body.deviceId !== undefined) {
-    throw new RequestError('unknown-reference', 'The device is unknown.', [
-      { pointer: '/deviceId', detail: `unknown device ${body.deviceId}` },
-    ]);
-  }
+export function settle(body: SettingsBody, reader: Reader) {
   const remarks = new Remarks();
   const pulseEnergyJ = pulseEnergyForFluenceJ(body.fluenceJPerCm2, {
     spot: body.spot,
     transmissionFraction: filled(body, 'transmissionFraction', remarks),
     calibrationFactor: filled(body, 'calibrationFactor', remarks),
   });
-  const { relativeStandard } = uncertaintyOf(body, remarks);
-  const expanded = coverageFactor * relativeStandard;
+  const expanded = coverageFactor * uncertaintyOf(body, remarks).relativeStandard;
+  const panelFluence = pulseEnergyJ / spotAreaCm2(body.spot);
   const reasons: string[] = [];
-  if (body.energyMaxJ === undefined) {
+  if (body.deviceId !== undefined) reasons.push(...deviceObstacles(body, reader, pulseEnergyJ, panelFluence));
+  else if (body.energyMaxJ === undefined) {
     remarks.caution('device-limits-unknown', 'No greatest energy was stated: whether the device can deliver this is not judged.');
-  } else if (pulseEnergyJ > body.energyMaxJ) {
-    reasons.push(`not deliverable: ${Number(pulseEnergyJ.toPrecision(4))} J are needed, the device gives ${body.energyMaxJ} J`);
   }
+  if (body.energyMaxJ !== undefined && pulseEnergyJ > body.energyMaxJ) reasons.push(tooMuch(pulseEnergyJ, body.energyMaxJ));
   const rate = body.repetitionRateHz;
   const result = {
     pulseEnergyJ,
     panel: {
       pulseEnergyJ,
-      fluenceJPerCm2: pulseEnergyJ / spotAreaCm2(body.spot),
+      fluenceJPerCm2: panelFluence,
       ...(rate === undefined ? {} : { averagePowerW: pulseEnergyJ * rate, repetitionRateHz: rate }),
     },
     deliverable: reasons.length === 0,
@@ -155,4 +154,32 @@ export function settle(body: SettingsBody) {
     highJPerCm2: body.fluenceJPerCm2 * (1 + expanded),
   };
   return { result, remarks, body };
+}
+
+function tooMuch(pulseEnergyJ: number, energyMaxJ: number): string {
+  return `not deliverable: ${Number(pulseEnergyJ.toPrecision(4))} J are needed, the device gives ${energyMaxJ} J`;
+}
+
+function deviceObstacles(body: SettingsBody, reader: Reader, pulseEnergyJ: number, panelFluenceJPerCm2: number): string[] {
+  const deviceId = body.deviceId!;
+  const { lines, missing, outOfService } = deviceLines(reader, [deviceId]);
+  if (missing.length + outOfService.length > 0) {
+    const detail = missing.length > 0 ? `unknown device ${deviceId}` : `device ${deviceId} is out of service`;
+    throw new RequestError('unknown-reference', 'The device is unknown or out of service.', [{ pointer: '/deviceId', detail }]);
+  }
+  const line = lines.find(({ wavelengthNm }) => wavelengthNm === body.wavelengthNm);
+  if (!line) return [`not deliverable: the device does not emit ${body.wavelengthNm} nm`];
+  const reasons: string[] = [];
+  const durationS = pulseEndS(body.pulse!);
+  if (durationS < line.pulseMinS || durationS > line.pulseMaxS) {
+    reasons.push(`not deliverable: the line emits pulses of ${line.pulseMinS} to ${line.pulseMaxS} s`);
+  }
+  if (!line.spots.some((own) => sameSpot(own, body.spot))) reasons.push('not deliverable: the device has no such spot');
+  if ((body.repetitionRateHz ?? 0) > line.repetitionMaxHz)
+    reasons.push(`not deliverable: the line repeats at ${line.repetitionMaxHz} Hz at most`);
+  if (line.energyMaxJ !== undefined && pulseEnergyJ > line.energyMaxJ) reasons.push(tooMuch(pulseEnergyJ, line.energyMaxJ));
+  if (line.fluenceMaxJPerCm2 !== undefined && panelFluenceJPerCm2 > line.fluenceMaxJPerCm2) {
+    reasons.push(`not deliverable: the device shows ${line.fluenceMaxJPerCm2} J/cm2 at most`);
+  }
+  return reasons;
 }

@@ -1,3 +1,4 @@
+import { actorOf } from '../../http/actor.js';
 import type { App } from '../../http/app-type.js';
 import { presentCalculation } from '../../http/calculation.js';
 import { calculationReplies } from '../../http/replies.js';
@@ -32,6 +33,6 @@ export function registerFluenceRoutes(app: App, parts: Parts): void {
         response: calculationReplies(SettingsResult),
       },
     },
-    async (request) => presentCalculation(settle(request.body), parts),
+    async (request) => presentCalculation(settle(request.body, { db: parts.db, clinicId: actorOf(request).clinicId }), parts),
   );
 }

@@ -17,6 +17,7 @@ import { resolveSkin } from '../../../domain/tissue/skin.js';
 import { RequestError } from '../../http/request-error.js';
 import type { Parts } from '../../parts.js';
 import { withTargetChromophore } from '../chromophores/chromophores.store.js';
+import { deviceLines } from '../devices/devices.store.js';
 import { presentRanked } from './rankings.present.js';
 import type { RankingRequest } from './rankings.schema.js';
 
@@ -33,7 +34,7 @@ export function rank(body: Body, shared: Parts, clinicId: string | null) {
   const skin = resolveSkin(body.skin, reference.skin, remarks);
   const question: ExposureQuestion = { skin, target: body.target, cooling: body.cooling, reference };
   const model = makeExposureModel({ ...question, remarks, solve: parts.lightFields.solve });
-  const candidates = candidatesOf(body, parts, model.target.relaxationTimeS, remarks);
+  const candidates = candidatesOf(body, parts, clinicId, model.target.relaxationTimeS, remarks);
   const safetyFactor = body.safetyFactor ?? 1;
   const options = {
     safetyFactor,
@@ -101,7 +102,7 @@ function sampled(
   return ordered;
 }
 
-function candidatesOf(body: Body, parts: Parts, relaxationTimeS: number, remarks: Remarks): Candidate[] {
+function candidatesOf(body: Body, parts: Parts, clinicId: string | null, relaxationTimeS: number, remarks: Remarks): Candidate[] {
   const pulses = body.pulseDurationsS;
   const pulseDurationsS =
     pulses === undefined ? null : Array.isArray(pulses) ? pulses : logSpacedS(pulses.fromS, pulses.toS, pulses.count);
@@ -113,7 +114,7 @@ function candidatesOf(body: Body, parts: Parts, relaxationTimeS: number, remarks
       status: 'convention',
     });
   }
-  const lines = linesOf(body, parts);
+  const lines = linesOf(body, parts, clinicId);
   const spots = body.spots ?? [body.spot!];
   const perLine = (pulseDurationsS?.length ?? 9) * spots.length; // 9: the most that defaults give
   if (lines.length * perLine > mostCandidates) {
@@ -124,7 +125,25 @@ function candidatesOf(body: Body, parts: Parts, relaxationTimeS: number, remarks
   return listCandidates({ lines, pulseDurationsS, spots, relaxationTimeS });
 }
 
-function linesOf({ candidates }: Body, { reference }: Parts): CandidateLine[] {
+function unusableDevices(
+  deviceIds: readonly string[],
+  missing: readonly string[],
+  outOfService: readonly string[],
+): RequestError {
+  const faults = deviceIds.flatMap((deviceId, i) =>
+    missing.includes(deviceId) || outOfService.includes(deviceId)
+      ? [
+          {
+            pointer: `/candidates/deviceIds/${i}`,
+            detail: missing.includes(deviceId) ? `unknown device ${deviceId}` : `device ${deviceId} is out of service`,
+          },
+        ]
+      : [],
+  );
+  return new RequestError('unknown-reference', 'A device is unknown or out of service.', faults);
+}
+
+function linesOf({ candidates }: Body, { reference, db }: Parts, clinicId: string | null): CandidateLine[] {
   const { wavelengthsNm, media, deviceIds } = candidates;
   if (media)
     return reference.media.map(({ medium, wavelengthNm, pulseMinS, pulseMaxS }) => ({
@@ -134,11 +153,9 @@ function linesOf({ candidates }: Body, { reference }: Parts): CandidateLine[] {
       pulseMaxS,
     }));
   if (deviceIds) {
-    const faults = deviceIds.map((deviceId, i) => ({
-      pointer: `/candidates/deviceIds/${i}`,
-      detail: `unknown device ${deviceId}`,
-    }));
-    throw new RequestError('unknown-reference', 'A device is unknown.', faults);
+    const { lines, missing, outOfService } = deviceLines({ db, clinicId }, deviceIds);
+    if (missing.length + outOfService.length > 0) throw unusableDevices(deviceIds, missing, outOfService);
+    return lines;
   }
   const nm = Array.isArray(wavelengthsNm)
     ? wavelengthsNm
