@@ -117,12 +117,15 @@ describe('import rules', () => {
     expect(wrong).toEqual([]);
   });
 
-  it('a room of the api knows other rooms by their stores alone', () => {
+  it('a room of the api never uses the routes, schemas, actions, presenters or jobs of another', () => {
     const wrong = imports
       .filter(({ file, target }) => file.startsWith('server/api/') && target.startsWith('.'))
       .map((one) => ({ file: one.file, to: resolved(one) }))
       .filter(
-        ({ file, to }) => to.startsWith('server/api/') && to.split('/')[2] !== file.split('/')[2] && !to.endsWith('.store.ts'),
+        ({ file, to }) =>
+          to.startsWith('server/api/') &&
+          to.split('/')[2] !== file.split('/')[2] &&
+          /\.(routes|schema|actions|present|jobs)\.ts$/.test(to),
       )
       .map(({ file, to }) => `${file} -> ${to}`);
     expect(wrong).toEqual([]);

@@ -65,7 +65,8 @@ describe('conventions of every route', () => {
       const unknown = await call(operation, { ...administrator, 'content-type': 'application/json' }, '{"noSuchField":NaN}');
       expect([400, 404, 403], operation.path).toContain(unknown.statusCode);
       const extra = await call(operation, { ...administrator, 'content-type': 'application/json' }, '{"noSuchField":1}');
-      expect([422, 404, 403], operation.path).toContain(extra.statusCode);
+      // 409: a route without a body, in a clinic that has nothing to sign yet.
+      expect([422, 404, 403, 409], operation.path).toContain(extra.statusCode);
       for (const reply of [broken, extra]) {
         expect(reply.headers['content-type']).toContain('application/problem+json');
         expect((JSON.parse(reply.body) as { type: string; banner: string }).type).toMatch(/^\/problems\//);
