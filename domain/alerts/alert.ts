@@ -14,10 +14,9 @@ export interface AlertFinding {
   readonly evidence: Readonly<Record<string, unknown>>;
 }
 
-/** An earlier exposure of the same course. */
+/** An earlier exposure of the same course and site. `isGroup`: it covered more than one place. */
 export interface EarlierExposure {
   readonly atMs: number;
-  readonly site: string | null;
   readonly passNumber: number | null;
   readonly isGroup: boolean;
 }
@@ -45,7 +44,8 @@ export interface ExposureFacts {
   readonly response: DeviceResponse;
   readonly delivered: DeliveredExposure;
   readonly protocol: ProtocolInForce | 'none' | 'not-in-force';
-  readonly earlier: readonly EarlierExposure[];
+  /** The exposure of the same course and site that came last before this one. */
+  readonly last: EarlierExposure | null;
 }
 
 /** One thing about an exposure that someone should be told. */

@@ -18,17 +18,14 @@ export const doublePass = defineAlert({
       };
     }
     const allowedPasses = envelope?.passMaxCount ?? 1;
-    const recent = facts.earlier.filter(({ atMs, site }) => {
-      const age = facts.atMs - atMs;
-      return age >= 0 && age <= addsUpMs && site === facts.site;
-    });
+    const { last } = facts;
+    if (last === null || facts.atMs - last.atMs > addsUpMs) return null;
     const pass = facts.passNumber ?? 1;
-    if (pass > allowedPasses && recent.some((earlier) => (earlier.passNumber ?? 1) < pass)) {
+    if (pass > allowedPasses && (last.passNumber ?? 1) < pass) {
       const text = `Pass ${pass} over a site that was exposed within the last 30 minutes; it adds to the first.`;
       return { severity: 'moderate', text, evidence: { passNumber: pass, allowedCount: allowedPasses } };
     }
-    const isGroup = facts.pulseCount > facts.stackCount;
-    if (isGroup && recent.some((earlier) => earlier.isGroup && earlier.passNumber === facts.passNumber)) {
+    if (facts.pulseCount > facts.stackCount && last.isGroup && last.passNumber === facts.passNumber) {
       const text =
         'Two groups of pulses with the same pass number on one site within 30 minutes; if they cover the same skin, they add up.';
       return { severity: 'low', text, evidence: { passNumber: facts.passNumber } };

@@ -7,7 +7,13 @@ export const inconsistentNumbers = defineAlert({
   title: 'Numbers of the record that do not agree',
   judge(facts) {
     const line = lineOf(facts, sameLineNm);
-    const wrong = diagnoseNumbers({ ...facts, energyMaxJ: line?.energyMaxJ, fluenceMaxJPerCm2: line?.fluenceMaxJPerCm2 });
+    const wrong = diagnoseNumbers({
+      set: facts.set,
+      spot: facts.spot,
+      pulseCount: facts.pulseCount,
+      energyMaxJ: line?.energyMaxJ,
+      fluenceMaxJPerCm2: line?.fluenceMaxJPerCm2,
+    });
     if (!wrong) return null;
     return {
       severity: 'high',

@@ -13,9 +13,9 @@ export const shortInterval = defineAlert({
   id: 'short-interval',
   title: 'Too short an interval since the last visit of this site',
   judge(facts) {
-    const visits = facts.earlier.filter(({ atMs, site }) => site === facts.site && facts.atMs - atMs > visitHours * msPerHour);
-    if (visits.length === 0) return null;
-    const days = (facts.atMs - Math.max(...visits.map(({ atMs }) => atMs))) / msPerDay;
+    const sinceMs = facts.last === null ? 0 : facts.atMs - facts.last.atMs;
+    if (sinceMs <= visitHours * msPerHour) return null; // none before, or the same visit: said at its first exposure
+    const days = sinceMs / msPerDay;
     const ofProtocol = protocolVerdict(facts)?.envelope?.intervalMinDays;
     const leastDays = ofProtocol ?? usualIntervalDays;
     if (days >= leastDays - visitHours / 24) return null;

@@ -50,7 +50,7 @@ function judge(writer: Writer, { row, exposure }: EffectiveExposure): void {
   }
   const raised = alertsOfExposure(writer, row.id);
   const place = { deviceId: row.deviceId, exposureId: row.id, courseId: row.courseId, atMs: row.atMs };
-  for (const finding of evaluateAlerts(factsOf(exposure, file, doseOf(exposure, file), protocol, []))) {
+  for (const finding of evaluateAlerts(factsOf(exposure, file, doseOf(exposure, file), protocol, null))) {
     if (raised.some(({ rule, content }) => rule === finding.rule && content.text === finding.text)) continue;
     insertAlert(writer, place, finding);
   }

@@ -16,6 +16,7 @@ export function known<T>(value: T): Known<T> | null {
 type Known<T> = Exclude<T, { unknown: string } | undefined>;
 
 export interface Dose {
+  readonly use: DeviceUse;
   readonly response: DeviceResponse;
   readonly delivered: DeliveredExposure;
 }
@@ -33,8 +34,9 @@ export function useOf(exposure: ExposureContent): DeviceUse {
 
 /** What was delivered, under the calibration in force at the exposure's own time. */
 export function doseOf(exposure: ExposureContent, file: DeviceFile): Dose {
-  const response = responseOf(file, useOf(exposure));
-  return { response, delivered: deliveredExposure(exposure.set, exposure.spot, response) };
+  const use = useOf(exposure);
+  const response = responseOf(file, use);
+  return { use, response, delivered: deliveredExposure(exposure.set, exposure.spot, response) };
 }
 
 /** The exposure as the rules see it. */
@@ -43,19 +45,25 @@ export function factsOf(
   file: DeviceFile,
   dose: Dose,
   protocol: ExposureFacts['protocol'],
-  earlier: readonly EarlierExposure[],
+  last: EarlierExposure | null,
+  site: string | null = known(exposure.site),
 ): ExposureFacts {
   const pigmentation = known(exposure.pigmentation);
   const { outputToleranceFraction, handpieces } = file.device.content;
+  const { use } = dose;
   return {
-    ...useOf(exposure),
+    atMs: use.atMs,
+    wavelengthNm: use.wavelengthNm,
+    spot: use.spot,
+    pulseDurationS: use.pulseDurationS,
+    handpiece: use.handpiece,
     set: exposure.set,
     pulseCount: exposure.pulseCount,
     stackCount: exposure.stackCount ?? 1,
     repetitionRateHz: known(exposure.repetitionRateHz),
     coolingKind: known(exposure.cooling)?.kind ?? null,
     passNumber: known(exposure.passNumber),
-    site: known(exposure.site),
+    site,
     itaDegrees: itaOf(pigmentation),
     phototype: pigmentation?.phototype ?? null,
     lines: file.lines,
@@ -64,7 +72,7 @@ export function factsOf(
     response: dose.response,
     delivered: dose.delivered,
     protocol,
-    earlier,
+    last,
   };
 }
 

@@ -1,7 +1,6 @@
 import { uuidv7 } from 'uuidv7';
 import type { EarlierExposure } from '../../../domain/alerts/alert.js';
 import { evaluateAlerts } from '../../../domain/alerts/index.js';
-import { visitHours } from '../../../domain/alerts/short-interval.js';
 import type { Writer } from '../../audit/with-audit.js';
 import { canonicalJson } from '../../codecs/canonical-json.js';
 import type { Actor } from '../../http/actor.js';
@@ -15,13 +14,7 @@ import type { DeviceFile } from '../devices/device-file.store.js';
 import { type ClinicBook, presentBook } from './clinic-book.store.js';
 import { type Dose, doseOf, factsOf, known } from './exposure-facts.js';
 import { ExposureRequest } from './exposures.schema.js';
-import {
-  type ExposureContent,
-  earlierInCourse,
-  findByExternalId,
-  insertExposure,
-  type NewExposureRow,
-} from './exposures.store.js';
+import { type ExposureContent, findByExternalId, insertExposure, lastOfSite, type NewExposureRow } from './exposures.store.js';
 
 /** What became of one record. A conflict is other content under the same device and external id. */
 export type Logged =
@@ -53,8 +46,6 @@ export function logExposures({ ledger }: Parts, actor: Actor, given: readonly un
   });
 }
 
-const windows = { recentMs: 30 * 60_000, visitMs: visitHours * 3_600_000 };
-
 /** One change's worth of logging. */
 class ExposureLog {
   readonly #book: ClinicBook;
@@ -71,12 +62,12 @@ class ExposureLog {
       exposure.protocolId === undefined ? 'none' : this.#book.protocol(exposure.protocolId, Date.parse(exposure.at));
     if (!file || course === null || protocol === null) return refused(file, course, protocol);
     const dose = doseOf(exposure, file);
-    const atMs = Date.parse(exposure.at);
+    const { atMs } = dose.use;
     const site = known(exposure.site) ?? course?.content.site ?? null;
-    const earlier = exposure.courseId === undefined ? [] : this.#earlier(exposure.courseId, site, atMs);
+    const last = exposure.courseId === undefined ? null : this.#last(exposure.courseId, site, atMs);
     const id = uuidv7();
     if (!insertExposure(this.writer, rowOf(id, exposure, site, dose))) return this.#alreadyThere(exposure);
-    const facts = { ...factsOf(exposure, file, dose, protocol, earlier), site };
+    const facts = factsOf(exposure, file, dose, protocol, last, site);
     const place = { deviceId: exposure.deviceId, exposureId: id, courseId: exposure.courseId ?? null, atMs };
     const alerts = evaluateAlerts(facts).map((finding) => insertAlert(this.writer, place, finding));
     return { status: 'stored', id, exposure, dose, alerts };
@@ -91,11 +82,11 @@ class ExposureLog {
     return course;
   }
 
-  #earlier(courseId: string, site: string | null, atMs: number): EarlierExposure[] {
-    return earlierInCourse(this.writer, courseId, site, atMs, windows).map((row) => {
-      const { passNumber, pulseCount, stackCount = 1 } = JSON.parse(row.content) as ExposureContent;
-      return { atMs: row.atMs, site: row.site, passNumber: known(passNumber), isGroup: pulseCount > stackCount };
-    });
+  #last(courseId: string, site: string | null, atMs: number): EarlierExposure | null {
+    const row = lastOfSite(this.writer, courseId, site, atMs);
+    if (!row) return null;
+    const { passNumber, pulseCount, stackCount = 1 } = JSON.parse(row.content) as ExposureContent;
+    return { atMs: row.atMs, passNumber: known(passNumber), isGroup: pulseCount > stackCount };
   }
 
   #alreadyThere(given: ExposureContent): Logged {
@@ -123,12 +114,12 @@ function refused(file: DeviceFile | null, course: CourseRecord | null | undefine
   return { status: 'invalid', errors };
 }
 
-function rowOf(id: string, exposure: ExposureContent, site: string | null, { response, delivered }: Dose): NewExposureRow {
+function rowOf(id: string, exposure: ExposureContent, site: string | null, { use, response, delivered }: Dose): NewExposureRow {
   return {
     id,
     deviceId: exposure.deviceId,
     externalId: exposure.externalId,
-    atMs: Date.parse(exposure.at),
+    atMs: use.atMs,
     courseId: exposure.courseId ?? null,
     site,
     content: JSON.stringify(exposure),

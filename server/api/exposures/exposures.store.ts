@@ -105,23 +105,11 @@ export function* eachExposure(reader: Reader, filter: Omit<ExposureFilter, 'coun
   }
 }
 
-/** Exposures of a course shortly before a time, newest first, and the last one of the site before that. */
-export function earlierInCourse(
-  { db, clinicId }: Reader,
-  courseId: string,
-  site: string | null,
-  atMs: number,
-  windows: { readonly recentMs: number; readonly visitMs: number },
-): Pick<ExposureRow, 'id' | 'atMs' | 'site' | 'content'>[] {
-  const columnsHere = 'id, at_ms AS atMs, site, content';
-  const recent = `SELECT ${columnsHere} FROM exposures INDEXED BY exposures_by_course
-    WHERE course_id = ? AND clinic_id = ? AND site IS ? AND at_ms >= ? AND at_ms <= ? ORDER BY at_ms DESC LIMIT 50`;
-  const before = `SELECT ${columnsHere} FROM exposures INDEXED BY exposures_by_course
-    WHERE course_id = ? AND clinic_id = ? AND site IS ? AND at_ms < ? ORDER BY at_ms DESC LIMIT 1`;
-  return [
-    ...prepared(db, recent).all(courseId, clinicId, site, atMs - windows.recentMs, atMs),
-    ...prepared(db, before).all(courseId, clinicId, site, atMs - windows.visitMs),
-  ] as ExposureRow[];
+/** The exposure of a course and site that came last before a time. */
+export function lastOfSite({ db, clinicId }: Reader, courseId: string, site: string | null, atMs: number): ExposureRow | null {
+  const sql = `SELECT ${columns} FROM exposures INDEXED BY exposures_by_course
+    WHERE course_id = ? AND clinic_id = ? AND site IS ? AND at_ms <= ? ORDER BY at_ms DESC, row_no DESC LIMIT 1`;
+  return (prepared(db, sql).get(courseId, clinicId, site, atMs) as ExposureRow | undefined) ?? null;
 }
 
 export type CorrectionBody = z.output<typeof CorrectionRequest>;

@@ -23,7 +23,7 @@ export function restateAlerts(writer: Writer, deviceId: string, fromMs: number):
     if (dose.response.calibrationIds.join(' ') === row.calibrationIds) continue;
     restated++;
     const protocol = exposure.protocolId === undefined ? 'none' : (book.protocol(exposure.protocolId, row.atMs) ?? 'none');
-    const found = evaluateAlerts(factsOf(exposure, file!, dose, protocol, [])).filter(({ rule }) => ofDelivery.includes(rule));
+    const found = evaluateAlerts(factsOf(exposure, file!, dose, protocol, null)).filter(({ rule }) => ofDelivery.includes(rule));
     if (found.length === 0) continue;
     const raised = alertsOfExposure(writer, row.id);
     for (const finding of found) {
