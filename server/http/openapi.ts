@@ -8,7 +8,7 @@ import type { App } from './app-type.js';
 const description = `${bannerText}
 
 Ranks the wavelengths, pulse durations and spots of a practice's own lasers for a target chromophore, turns panel settings into the fluence that
-reached the skin, keeps calibrations and the device log. Pulse durations are full widths at half maximum; energies are per
+reached the skin, and keeps calibrations and the device log. Pulse durations are full widths at half maximum; energies are per
 pulse at the skin unless the name says otherwise; a flat-top's diameter is its edge, a Gaussian's is 1/e2. Exposure limits protect bystanders and
 staff and do not apply to the intended treatment site. Not a cleared medical device.`;
 
